@@ -1,0 +1,10 @@
+//! Expected and measured resistances of gated quantum Hall devices: solved, drawn, compared and written to a sheet.
+//!
+//! The modules stand in reading order, and that order is the path of the data: text becomes a checked
+//! `device` and `cooldown`; the device becomes a planar `layout`, the layout a `network` of edge channels, the
+//! network a `conductance` matrix; with the `circuit` around it that gives every `resistance`. A table becomes
+//! `measured` readings, which `compare` sets against the expected ones. `safety` chooses cautions, `figure` draws,
+//! `report` holds every table and sentence, typed and rounded; `sheet` turns a report into pages, `archive` into a
+//! record. Only `files` touches the disk and only `cli` prints.
+
+pub mod diagnostic;
