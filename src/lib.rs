@@ -8,3 +8,5 @@
 //! record. Only `files` touches the disk and only `cli` prints.
 
 pub mod diagnostic;
+
+pub mod number;
