@@ -10,3 +10,5 @@
 pub mod diagnostic;
 
 pub mod number;
+
+pub mod quantity;
