@@ -12,3 +12,5 @@ pub mod diagnostic;
 pub mod number;
 
 pub mod quantity;
+
+pub mod syntax;
