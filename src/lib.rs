@@ -14,3 +14,5 @@ pub mod number;
 pub mod quantity;
 
 pub mod syntax;
+
+pub mod device;

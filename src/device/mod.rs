@@ -1,0 +1,245 @@
+//! The device file, checked: what was made, in the words of the field.
+//!
+//! Owns: [`Device`] and the checks on it, one function per rule. Takes the text of a device file (through `syntax`),
+//! gives a [`Device`] or all faults at once. Must never contain a disk, a solution or anything of a later room:
+//! whether contacts overlap or lie on the rim is found by `layout`, which has the places to say so.
+
+use crate::diagnostic::Place;
+use crate::number::Rational;
+use crate::quantity::Nanometres;
+
+mod ladder;
+mod names;
+mod parse;
+
+pub use ladder::Ladder;
+pub use ladder::LadderPlace;
+pub use names::Names;
+pub use parse::from_bytes;
+pub use parse::from_source;
+
+/// Index of a contact, in the order of the device file.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub struct ContactIdx(pub usize);
+
+/// Index of an overlay (a gate or a step): all gates in the order of the file, then all steps.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub struct OverlayIdx(pub usize);
+
+/// A device: everything the device file says.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Device {
+    /// Identity, as `[device] id`.
+    pub id: String,
+    /// Title line, empty where none is given.
+    pub title: String,
+    /// Material, empty where none is given.
+    pub material: String,
+    /// The fillings at which this material shows plateaus.
+    pub ladder: Ladder,
+    /// The layer's density and mobility.
+    pub layer: Layer,
+    /// The shape of the mesa.
+    pub mesa: Mesa,
+    /// Mixing along rims and borders.
+    pub edge: EdgeRules,
+    /// All contacts, in the order of the file.
+    pub contacts: Vec<Contact>,
+    /// All gates, then all steps.
+    pub overlays: Vec<Overlay>,
+    /// Operating points, in the order of the file.
+    pub points: Vec<OperatingPoint>,
+    /// Readings that the file names; empty means that a standard set is chosen.
+    pub readings: Vec<NamedReading>,
+}
+
+/// `[layer]`: what is known of the ungated layer.
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
+pub struct Layer {
+    /// Sheet density in 1/m².
+    pub density_per_m2: Option<f64>,
+    /// Mobility in m²/(V s).
+    pub mobility_m2_per_vs: Option<f64>,
+}
+
+/// `[mesa]`: shape and the pixel of the exact arrangement.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Mesa {
+    /// The shape as written.
+    pub shape: MesaShape,
+    /// Corners and edges nearer than this are one.
+    pub snap: Nanometres,
+    /// Where the table stands.
+    pub place: Place,
+}
+
+/// The shapes that are laid out.
+#[derive(Clone, Debug, PartialEq)]
+pub enum MesaShape {
+    /// A rectangle with x from 0 at the left end and y from 0 at the lower edge; arms are added by contacts.
+    Bar {
+        /// Extent along x.
+        length: Nanometres,
+        /// Extent along y.
+        width: Nanometres,
+    },
+}
+
+/// A corner of an outline: (x, y), x to the right, y up.
+pub type Corner = (Nanometres, Nanometres);
+
+/// Where a contact sits on the mesa.
+#[derive(Clone, Debug, PartialEq)]
+pub enum ContactShape {
+    /// On one straight edge of a bar, at the end of an arm of length `arm` (0: on the edge itself).
+    Edge {
+        /// Which edge.
+        edge: Edge,
+        /// Centre along the edge (x for top and bottom, y for left and right); none means the whole end.
+        centre: Option<Nanometres>,
+        /// Width along the edge; none means the whole end.
+        width: Option<Nanometres>,
+        /// Length of the arm of mesa that carries the contact.
+        arm: Nanometres,
+    },
+    /// Any outline.
+    Outline(Vec<Corner>),
+}
+
+/// The four edges of a bar.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub enum Edge {
+    /// x = 0.
+    Left,
+    /// y = width.
+    Top,
+    /// x = length.
+    Right,
+    /// y = 0.
+    Bottom,
+}
+
+/// A contact.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Contact {
+    /// Name, unique among contacts.
+    pub name: String,
+    /// Carrier pin, if given; unique among pins.
+    pub pin: Option<String>,
+    /// Chip pad, if given.
+    pub pad: Option<String>,
+    /// Free text.
+    pub note: Option<String>,
+    /// Where it sits.
+    pub shape: ContactShape,
+    /// Share of each channel that it absorbs and emits, outermost ladder step first; the last value repeats. Not empty.
+    pub transmission: Vec<Rational>,
+    /// Where the table stands.
+    pub place: Place,
+}
+
+/// Whether an overlay is a gate or an ungated density step.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum OverlayKind {
+    /// A gate, with a voltage.
+    Gate,
+    /// A part of the layer with a filling of its own and no gate.
+    Step,
+}
+
+/// A gate or a step.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Overlay {
+    /// Name, unique among gates and steps, never containing `+` and never `bulk`.
+    pub name: String,
+    /// Gate or step.
+    pub kind: OverlayKind,
+    /// Where it lies.
+    pub shape: OverlayShape,
+    /// Mixing along this overlay's own borders, if the file sets it.
+    pub mixing: Option<Mixing>,
+    /// Change of density per volt, in 1/(m² V).
+    pub density_per_m2_per_v: Option<f64>,
+    /// Gate voltage at which the gated density is the layer's, in V.
+    pub zero_v: Option<f64>,
+    /// Lowest and highest voltage allowed, in V.
+    pub limits_v: Option<(f64, f64)>,
+    /// Where the table stands.
+    pub place: Place,
+}
+
+/// The extent of an overlay.
+#[derive(Clone, Debug, PartialEq)]
+pub enum OverlayShape {
+    /// Across the whole bar between two x.
+    Across {
+        /// Left border.
+        from: Nanometres,
+        /// Right border.
+        to: Nanometres,
+    },
+    /// Any outline.
+    Outline(Vec<Corner>),
+}
+
+/// How channels that run side by side share their potentials.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Mixing {
+    /// Each keeps its own (ℓ = ∞).
+    None,
+    /// All take the mean weighted by conductance (ℓ = 0).
+    Full,
+}
+
+/// `[edge]`: mixing along rims, borders of one sign and borders between opposite signs.
+#[derive(Clone, Debug, PartialEq)]
+pub struct EdgeRules {
+    /// Along the rim.
+    pub rim: Mixing,
+    /// Along borders between regions of one sign.
+    pub interface: Mixing,
+    /// Along borders between opposite signs.
+    pub opposite: Mixing,
+}
+
+/// `[[point]]`: a field magnitude and the fillings that it sets.
+#[derive(Clone, Debug, PartialEq)]
+pub struct OperatingPoint {
+    /// Name, unique among points.
+    pub name: String,
+    /// Field magnitude in T.
+    pub field_t: Option<f64>,
+    /// Filling of the ungated mesa, signed.
+    pub bulk: Rational,
+    /// Fillings by set of overlays (sorted, no repeats): `TG`, `TG+BG`.
+    pub fillings: Vec<(Vec<OverlayIdx>, Rational)>,
+    /// Gate voltages in V.
+    pub gates_v: Vec<(OverlayIdx, f64)>,
+    /// Mixing rules in use at this point: `[edge]` with the point's own entries put in.
+    pub edge: EdgeRules,
+    /// Where the table stands.
+    pub place: Place,
+}
+
+impl OperatingPoint {
+    /// The filling of the part of the mesa under exactly these overlays (sorted); none where an overlap has no entry.
+    /// A gate that is not named has the bulk filling.
+    pub fn filling(&self, cover: &[OverlayIdx]) -> Option<&Rational> {
+        let entry = self.fillings.iter().find(|(under, _)| under == cover).map(|(_, filling)| filling);
+        match cover.len() {
+            0 | 1 => Some(entry.unwrap_or(&self.bulk)),
+            _ => entry,
+        }
+    }
+}
+
+/// `[[reading]]`: a reading that the file asks for.
+#[derive(Clone, Debug, PartialEq)]
+pub struct NamedReading {
+    /// Name, if given.
+    pub name: Option<String>,
+    /// Current in at the first, out at the second.
+    pub current: [ContactIdx; 2],
+    /// The meter's + input on the first, − on the second.
+    pub voltage: [ContactIdx; 2],
+}

@@ -1,0 +1,95 @@
+//! The text of a device file to a checked [`Device`]: one file per table, one function per rule.
+
+mod contact;
+mod density;
+mod filling;
+mod identity;
+mod mesa;
+mod mixing;
+mod overlay;
+mod point;
+mod reading;
+mod transmission;
+
+use std::sync::Arc;
+
+use crate::diagnostic::Diagnostic;
+use crate::diagnostic::Findings;
+use crate::diagnostic::Outcome;
+use crate::diagnostic::Source;
+use crate::syntax;
+use crate::syntax::Checked;
+use crate::syntax::Table;
+use crate::syntax::keys::DEVICE_FILE;
+
+use crate::device::Device;
+use crate::device::Ladder;
+use crate::device::Names;
+
+/// Reads the bytes of a device file known to the user as `name`. Faults: all of [`from_source`], and bytes that are not UTF-8.
+pub fn from_bytes(name: &str, bytes: &[u8]) -> Outcome<Device> {
+    from_source(&syntax::from_bytes(name, bytes)?)
+}
+
+/// Reads a device file. All faults come at once, each with its place; where the syntax is broken the rules between
+/// tables are left for the next run, because they would find faults that are not there.
+pub fn from_source(source: &Arc<Source>) -> Outcome<Device> {
+    let Checked { root, mut findings, whole } = syntax::read(source, &DEVICE_FILE)?;
+    let device = if whole { device(&root, &mut findings) } else { None };
+    match device {
+        Some(device) => findings.finish(device),
+        None => Err(findings.into_faults()),
+    }
+}
+
+/// What the rules for points, contacts and readings look up.
+struct Scope<'a> {
+    ladder: &'a Ladder,
+    contacts: Names,
+    overlays: Names,
+    gates: usize,
+}
+
+fn device(root: &Table, findings: &mut Findings) -> Option<Device> {
+    let identity = identity::read(root);
+    let ladder = identity::ladder(root);
+    let mesa = mesa::read(root, findings);
+    let edge = mixing::edge(root, findings);
+    let overlays = overlay::read(root, findings);
+    let scope = scope(root, &ladder);
+    let points = point::read(root, &scope, findings);
+    let contacts = contact::read(root, points.as_deref().map(|points| (points, &ladder)), findings);
+    let readings = reading::read(root, &scope, findings);
+    let layer = identity::layer(root);
+    let device = Device {
+        id: identity.id,
+        title: identity.title,
+        material: identity.material,
+        layer,
+        mesa: mesa?,
+        edge,
+        contacts: contacts?,
+        overlays: overlays?,
+        points: points?,
+        readings: readings?,
+        ladder,
+    };
+    density::compare(&device, findings);
+    Some(device)
+}
+
+fn scope<'a>(root: &Table, ladder: &'a Ladder) -> Scope<'a> {
+    let gates = root.tables("gate");
+    let overlays = gates.iter().copied().chain(root.tables("step"));
+    Scope {
+        ladder,
+        contacts: Names::of_tables("contact", root.tables("contact")),
+        overlays: Names::of_tables("gate or step", overlays),
+        gates: gates.len(),
+    }
+}
+
+/// Takes a value, or notes why there is none.
+fn noted<T>(found: Result<T, Option<Diagnostic>>, findings: &mut Findings) -> Option<T> {
+    found.map_err(|fault| findings.extend(fault)).ok()
+}
