@@ -16,3 +16,5 @@ pub mod quantity;
 pub mod syntax;
 
 pub mod device;
+
+pub mod cooldown;
