@@ -18,3 +18,5 @@ pub mod syntax;
 pub mod device;
 
 pub mod cooldown;
+
+pub mod layout;
