@@ -20,3 +20,5 @@ pub mod device;
 pub mod cooldown;
 
 pub mod layout;
+
+pub mod network;

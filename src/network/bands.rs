@@ -1,0 +1,63 @@
+//! Level bands: levels that run everywhere alike are one channel with a weight.
+
+use std::collections::BTreeMap;
+use std::collections::BTreeSet;
+
+use crate::network::Band;
+use crate::network::Carrier;
+use crate::network::Operating;
+use crate::number::Rational;
+
+/// All bands of a setting: electrons from the outermost inward, then holes.
+///
+/// Between two successive values of |ν| that occur (or that enclose a partial filling) all levels bound the same
+/// regions, so ν = 100 costs no more than ν = 2.
+pub(super) fn bands(operating: &Operating) -> Vec<Band> {
+    let mut all = carrier_bands(operating, Carrier::Electron);
+    let first_hole_step = all.iter().map(|band| band.step + 1).max().unwrap_or(0);
+    let holes = carrier_bands(operating, Carrier::Hole);
+    all.extend(holes.into_iter().map(|band| Band { step: band.step + first_hole_step, ..band }));
+    all
+}
+
+/// |ν| of a face for one carrier: zero where the face holds the other carrier or none.
+pub(super) fn level(filling: &Rational, carrier: Carrier) -> Rational {
+    match (carrier, filling.is_negative()) {
+        (Carrier::Electron, false) | (Carrier::Hole, true) => filling.abs(),
+        _ => Rational::ZERO,
+    }
+}
+
+fn carrier_bands(operating: &Operating, carrier: Carrier) -> Vec<Band> {
+    let enclosing = enclosing_steps(operating, carrier);
+    let mut steps = BTreeMap::new();
+    let mut below = Rational::ZERO;
+    let mut bands = Vec::new();
+    for (rank, to) in thresholds(operating, carrier, &enclosing).into_iter().enumerate() {
+        let key = step_bottom(&enclosing, &below, &to);
+        let next_step = steps.len();
+        let step = *steps.entry(key).or_insert(next_step);
+        bands.push(Band { carrier, from: below, to: to.clone(), rank, step });
+        below = to;
+    }
+    bands
+}
+
+/// Values of |ν| at which a band ends: those that occur and those that enclose a partial one, none beyond the highest.
+fn thresholds(operating: &Operating, carrier: Carrier, enclosing: &[(Rational, Rational)]) -> BTreeSet<Rational> {
+    let mut ends: BTreeSet<Rational> = operating.fillings.iter().map(|filling| level(filling, carrier)).collect();
+    let highest = ends.last().cloned().unwrap_or_default();
+    ends.extend(enclosing.iter().flat_map(|(lower, upper)| [lower.clone(), upper.clone()]));
+    ends.into_iter().filter(|end| !end.is_zero() && *end <= highest).collect()
+}
+
+fn enclosing_steps(operating: &Operating, carrier: Carrier) -> Vec<(Rational, Rational)> {
+    let faces = operating.fillings.iter().zip(&operating.enclosing);
+    faces.filter(|(filling, _)| !level(filling, carrier).is_zero()).filter_map(|(_, steps)| steps.clone()).collect()
+}
+
+/// The lower end of the ladder step to which a band belongs; a band outside all partial steps is its own.
+fn step_bottom(enclosing: &[(Rational, Rational)], from: &Rational, to: &Rational) -> Rational {
+    let holder = enclosing.iter().find(|(lower, upper)| lower <= from && to <= upper);
+    holder.map_or(from, |(lower, _)| lower).clone()
+}

@@ -1,0 +1,119 @@
+//! From layout and device to a network, a setting and its channels.
+
+use crate::device::Device;
+use crate::device::EdgeRules;
+use crate::device::Ladder;
+use crate::device::LadderPlace;
+use crate::device::Mixing;
+use crate::device::OperatingPoint;
+use crate::device::OverlayIdx;
+use crate::layout::FaceLabel;
+use crate::layout::Layout;
+use crate::layout::Piece;
+use crate::layout::PieceIdx;
+use crate::layout::Topology;
+use crate::network::BandIdx;
+use crate::network::Channels;
+use crate::network::Network;
+use crate::network::Operating;
+use crate::network::bands::bands;
+use crate::network::bundles::assemble;
+use crate::network::courses::append_paths;
+use crate::number::Rational;
+use crate::quantity::Polarity;
+
+/// What is beside what, with lengths in place of coordinates.
+pub fn network(layout: &Layout, contacts: usize) -> Network {
+    let lengths_um =
+        (0..layout.topology.pieces.len()).map(|piece| layout.positions.length_um(PieceIdx(piece))).collect();
+    Network { topology: layout.topology.clone(), lengths_um, contacts }
+}
+
+/// The setting of one operating point at one polarity. Every overlap must have an entry (the layout has checked it).
+pub fn operating(network: &Network, device: &Device, point: &OperatingPoint, polarity: Polarity) -> Operating {
+    let faces = &network.topology.faces;
+    let fillings: Vec<Rational> = faces.iter().map(|label| filling(label, point)).collect();
+    Operating {
+        enclosing: fillings.iter().map(|filling| enclosing(&device.ladder, filling)).collect(),
+        mixing: network
+            .topology
+            .pieces
+            .iter()
+            .map(|piece| mixing(piece, network, device, (point, &fillings)))
+            .collect(),
+        transmission: device.contacts.iter().map(|contact| contact.transmission.clone()).collect(),
+        fillings,
+        polarity,
+    }
+}
+
+/// All channels of a setting.
+pub fn channels(network: &Network, operating: &Operating) -> Channels {
+    let bands = bands(operating);
+    let mut paths = Vec::new();
+    for (at, band) in bands.iter().enumerate() {
+        append_paths(&mut paths, &network.topology, operating, (BandIdx(at), band));
+    }
+    assemble(bands, paths, operating)
+}
+
+fn filling(label: &FaceLabel, point: &OperatingPoint) -> Rational {
+    match label {
+        FaceLabel::Mesa(cover) => point.filling(cover).unwrap_or(&point.bulk).clone(),
+        FaceLabel::Vacuum | FaceLabel::Contact(_) => Rational::ZERO,
+    }
+}
+
+fn enclosing(ladder: &Ladder, filling: &Rational) -> Option<(Rational, Rational)> {
+    match ladder.place(filling) {
+        LadderPlace::Between { lower, upper } => Some((lower, upper)),
+        LadderPlace::Step | LadderPlace::Beyond => None,
+    }
+}
+
+fn mixing(
+    piece: &Piece,
+    network: &Network,
+    device: &Device,
+    (point, fillings): (&OperatingPoint, &[Rational]),
+) -> Mixing {
+    let EdgeRules { rim, interface, opposite } = &point.edge;
+    let (left, right) = (&fillings[piece.left.0], &fillings[piece.right.0]);
+    let own = own_mixing(piece, &network.topology, device);
+    let rule = match border(piece, &network.topology) {
+        Border::Rim => rim,
+        Border::Inner if (left * right).is_negative() => own.unwrap_or(opposite),
+        Border::Inner => own.unwrap_or(interface),
+        Border::Contact => &Mixing::None,
+    };
+    rule.clone()
+}
+
+enum Border {
+    Rim,
+    Inner,
+    Contact,
+}
+
+fn border(piece: &Piece, topology: &Topology) -> Border {
+    match (&topology.faces[piece.left.0], &topology.faces[piece.right.0]) {
+        (FaceLabel::Contact(_), _) | (_, FaceLabel::Contact(_)) => Border::Contact,
+        (FaceLabel::Mesa(_), FaceLabel::Mesa(_)) => Border::Inner,
+        _ => Border::Rim,
+    }
+}
+
+/// The rule of the gate or step whose own border this is. Where borders of several coincide, the first that states a
+/// rule counts (gates before steps, in the order of the file), whichever side it lies on.
+fn own_mixing<'a>(piece: &Piece, topology: &Topology, device: &'a Device) -> Option<&'a Mixing> {
+    let (FaceLabel::Mesa(left), FaceLabel::Mesa(right)) =
+        (&topology.faces[piece.left.0], &topology.faces[piece.right.0])
+    else {
+        return None;
+    };
+    let mut overlays = device.overlays.iter().enumerate();
+    overlays.find_map(|(at, overlay)| {
+        let ends_here = left.contains(&OverlayIdx(at)) != right.contains(&OverlayIdx(at));
+        overlay.mixing.as_ref().filter(|_| ends_here)
+    })
+}
