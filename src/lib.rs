@@ -22,3 +22,5 @@ pub mod cooldown;
 pub mod layout;
 
 pub mod network;
+
+pub mod conductance;
