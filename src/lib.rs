@@ -24,3 +24,5 @@ pub mod layout;
 pub mod network;
 
 pub mod conductance;
+
+pub mod circuit;
