@@ -26,3 +26,5 @@ pub mod network;
 pub mod conductance;
 
 pub mod circuit;
+
+pub mod resistance;

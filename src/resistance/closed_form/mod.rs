@@ -1,0 +1,190 @@
+//! Closed forms: readings as sums Σ a_r/ν_r over the regions, with rational a_r.
+//!
+//! Within one ordering of the fillings the readings of a mesa are usually such sums, unmixed and fully mixed. The a_r are
+//! fitted on small fillings in the ordering of the operating point and verified exactly on at least twice as many
+//! others and on the point itself; where that fails there is no closed form.
+
+mod fit;
+mod samples;
+mod words;
+
+use crate::device::Device;
+use crate::device::OperatingPoint;
+use crate::device::OverlayIdx;
+use crate::network::FaceIdx;
+use crate::network::FaceLabel;
+use crate::network::Network;
+use crate::network::Operating;
+use crate::number::Rational;
+use crate::resistance::Reading;
+use crate::resistance::closed_form::fit::Entries;
+use crate::resistance::closed_form::fit::Fit;
+
+/// A part of the device with a filling of its own: all faces under one set of overlays. Regions that have one filling at
+/// a point can be tied: what is then said holds while they stay equal.
+#[derive(Clone, Debug, PartialEq)]
+pub struct FillingRegion {
+    /// `bulk`, `TG`, `TG+BG`; tied regions are joined with a comma.
+    pub name: String,
+    /// Its faces.
+    pub faces: Vec<FaceIdx>,
+    /// Its filling at the point.
+    pub filling: Rational,
+}
+
+impl FillingRegion {
+    /// Whether it is the ungated mesa.
+    pub fn is_bulk(&self) -> bool {
+        self.name == BULK
+    }
+}
+
+/// A reading as a sum over regions.
+#[derive(Clone, Debug, PartialEq)]
+pub struct ClosedForm {
+    /// (index of the region, a): the reading is Σ a/ν, with |ν| where a filling of the point is negative. No zeros.
+    pub terms: Vec<(usize, Rational)>,
+}
+
+/// All closed forms of one setting.
+pub struct ClosedForms {
+    /// Regions with a filling of their own, the bulk last; then those with the bulk's filling; then ties.
+    regions: Vec<FillingRegion>,
+    own: usize,
+    levels: Vec<Level>,
+    magnitudes: bool,
+}
+
+/// One way to name regions: each on its own, or those of one filling tied.
+struct Level {
+    fit: Fit,
+    /// For every region of the fit its index among all regions.
+    regions: Vec<usize>,
+}
+
+impl ClosedForms {
+    /// Fits and verifies on a network in the ordering of a setting. `regions` as from [`filling_regions`].
+    ///
+    /// Regions of one filling are first told apart: a form that names one of them holds whichever is the larger. What
+    /// depends on which is the larger has a form only while they stay tied, and then names them together.
+    pub fn of(network: &Network, operating: &Operating, regions: Vec<FillingRegion>) -> Self {
+        let magnitudes = regions.iter().any(|region| region.filling.is_negative());
+        let (mut regions, own) = own_first(regions);
+        let apart: Vec<usize> = (0..regions.len()).collect();
+        let tied = ties(&mut regions);
+        let ways = if tied.len() < apart.len() { vec![apart, tied] } else { vec![apart] };
+        let level = |way: Vec<usize>| {
+            let named: Vec<FillingRegion> = way.iter().map(|&at| regions[at].clone()).collect();
+            Fit::of(network, operating, &named).map(|fit| Level { fit, regions: way })
+        };
+        Self { levels: ways.into_iter().filter_map(level).collect(), regions, own, magnitudes }
+    }
+
+    /// The closed form of a reading, if it has one.
+    pub fn form(&self, reading: &Reading) -> Option<ClosedForm> {
+        self.levels.iter().find_map(|level| level.fit.coefficients(reading).map(|found| level.form(found)))
+    }
+
+    /// The closed forms of many readings of a device with so many contacts.
+    pub fn forms(&self, readings: &[&Reading], contacts: usize) -> Vec<Option<ClosedForm>> {
+        let many = readings.len() > contacts * contacts;
+        let entries: Vec<(&Level, Entries)> =
+            self.levels.iter().filter(|_| many).map(|level| (level, Entries::of(&level.fit, contacts))).collect();
+        let summed = |reading: &Reading| match entries.first() {
+            Some((level, entries)) => entries.sum(reading).map(|found| level.form(found)),
+            None => None,
+        };
+        readings.iter().map(|reading| summed(reading).or_else(|| self.form(reading))).collect()
+    }
+
+    /// A closed form in words, such as `1/ν(TG) − 1/ν(bulk)`.
+    pub fn words(&self, form: &ClosedForm) -> String {
+        words::words(&self.regions, form, if self.magnitudes { ("|ν(", ")|") } else { ("ν(", ")") })
+    }
+
+    /// The regions with a filling of their own at the point, in the order in which forms name them, the bulk last.
+    pub fn regions(&self) -> &[FillingRegion] {
+        &self.regions[..self.own]
+    }
+}
+
+impl Level {
+    fn form(&self, coefficients: Vec<Rational>) -> ClosedForm {
+        let terms = self.regions.iter().copied().zip(coefficients);
+        ClosedForm { terms: terms.filter(|(_, a)| !a.is_zero()).collect() }
+    }
+}
+
+/// Regions with a filling of their own, then overlays that have the bulk's; and the number of the first.
+fn own_first(regions: Vec<FillingRegion>) -> (Vec<FillingRegion>, usize) {
+    let bulk = regions.iter().find(|region| region.is_bulk()).map(|region| region.filling.clone());
+    let own = |region: &FillingRegion| region.is_bulk() || Some(&region.filling) != bulk.as_ref();
+    let (mut own, like_bulk): (Vec<_>, Vec<_>) = regions.into_iter().partition(own);
+    let count = own.len();
+    own.extend(like_bulk);
+    (own, count)
+}
+
+/// The regions of every filling as one: its own where it is alone, the bulk where it has the bulk's filling, else a tie
+/// that is added to the regions. Gives their indices.
+fn ties(regions: &mut Vec<FillingRegion>) -> Vec<usize> {
+    let mut tied: Vec<usize> = Vec::new();
+    for at in 0..regions.len() {
+        let same: Vec<usize> =
+            (0..regions.len()).filter(|&other| regions[other].filling == regions[at].filling).collect();
+        if tied.iter().any(|&known| regions[known].filling == regions[at].filling) {
+            continue;
+        }
+        let joined = join(regions, &same);
+        match same.as_slice() {
+            [only] => tied.push(*only),
+            _ => {
+                tied.push(regions.len());
+                regions.push(joined);
+            }
+        }
+    }
+    tied
+}
+
+fn join(regions: &[FillingRegion], same: &[usize]) -> FillingRegion {
+    let names: Vec<&str> = same.iter().map(|&at| regions[at].name.as_str()).collect();
+    let name = if names.contains(&BULK) { BULK.to_owned() } else { names.join(", ") };
+    let faces = same.iter().flat_map(|&at| regions[at].faces.clone()).collect();
+    FillingRegion { name, faces, filling: regions[same[0]].filling.clone() }
+}
+
+/// The regions of a point: overlays first, in the order of the device file, the bulk last. Regions of filling zero carry
+/// nothing and are left out.
+pub fn filling_regions(network: &Network, device: &Device, point: &OperatingPoint) -> Vec<FillingRegion> {
+    let mut regions: Vec<FillingRegion> = Vec::new();
+    for (face, cover) in covers(network, point) {
+        let Some(filling) = point.filling(&cover).filter(|filling| !filling.is_zero()) else { continue };
+        let name = cover_name(device, &cover);
+        match regions.iter_mut().find(|region| region.name == name) {
+            Some(region) => region.faces.push(face),
+            None => regions.push(FillingRegion { name, faces: vec![face], filling: filling.clone() }),
+        }
+    }
+    regions
+}
+
+const BULK: &str = "bulk";
+
+/// Every face of the mesa with its cover, gated ones first; a gate that the point does not name counts as bulk.
+fn covers(network: &Network, point: &OperatingPoint) -> Vec<(FaceIdx, Vec<OverlayIdx>)> {
+    let mut covers: Vec<(FaceIdx, Vec<OverlayIdx>)> = Vec::new();
+    for (face, label) in network.topology.faces.iter().enumerate() {
+        if let FaceLabel::Mesa(cover) = label {
+            let named = point.fillings.iter().any(|(under, _)| under == cover);
+            covers.push((FaceIdx(face), if named { cover.clone() } else { Vec::new() }));
+        }
+    }
+    covers.sort_by(|(_, a), (_, b)| (a.is_empty(), a).cmp(&(b.is_empty(), b)));
+    covers
+}
+
+fn cover_name(device: &Device, cover: &[OverlayIdx]) -> String {
+    let names: Vec<&str> = cover.iter().map(|at| device.overlays[at.0].name.as_str()).collect();
+    if names.is_empty() { BULK.to_owned() } else { names.join("+") }
+}
