@@ -28,3 +28,5 @@ pub mod conductance;
 pub mod circuit;
 
 pub mod resistance;
+
+pub mod measured;

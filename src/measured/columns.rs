@@ -1,0 +1,166 @@
+//! The columns of a readings table and its header line.
+
+use std::collections::BTreeMap;
+
+use crate::cooldown::Names;
+use crate::diagnostic::Diagnostic;
+use crate::diagnostic::Findings;
+use crate::diagnostic::Place;
+
+use crate::measured::split::Cell;
+use crate::measured::split::Line;
+use crate::syntax::did_you_mean;
+use crate::syntax::quoted;
+
+/// A column.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Column {
+    Point,
+    Polarity,
+    Field,
+    CurrentIn,
+    CurrentOut,
+    VoltagePlus,
+    VoltageMinus,
+    Value,
+    Unit,
+    Uncertainty,
+    Meter,
+    Set,
+    Note,
+}
+
+/// Every column with its name in the header. They may stand in any order.
+pub const COLUMNS: [(Column, &str); 13] = [
+    (Column::Point, "point"),
+    (Column::Polarity, "polarity"),
+    (Column::Field, "field_T"),
+    (Column::CurrentIn, "i_in"),
+    (Column::CurrentOut, "i_out"),
+    (Column::VoltagePlus, "v_plus"),
+    (Column::VoltageMinus, "v_minus"),
+    (Column::Value, "value"),
+    (Column::Unit, "unit"),
+    (Column::Uncertainty, "u"),
+    (Column::Meter, "meter"),
+    (Column::Set, "set"),
+    (Column::Note, "note"),
+];
+
+/// Columns that every table has; with them one of `polarity` and `field_T`, and `point` where there are several.
+const REQUIRED: [Column; 5] =
+    [Column::CurrentIn, Column::CurrentOut, Column::VoltagePlus, Column::VoltageMinus, Column::Value];
+
+impl Column {
+    /// Its name in the header.
+    pub fn name(self) -> &'static str {
+        COLUMNS.iter().find(|(column, _)| *column == self).map_or("", |(_, name)| name)
+    }
+}
+
+/// Where each column stands.
+#[derive(Clone, Debug)]
+pub struct Header {
+    places: BTreeMap<Column, usize>,
+    words: Vec<String>,
+}
+
+impl Header {
+    /// Reads the header line; faults about it go into `findings`.
+    pub fn read(line: &Line, names: &Names, findings: &mut Findings) -> Self {
+        let words = line.cells.iter().map(|cell| cell.text.clone()).collect();
+        let mut header = Self { places: BTreeMap::new(), words };
+        for (at, cell) in line.cells.iter().enumerate() {
+            header.note(at, cell, findings);
+        }
+        findings.extend(header.missing(names).map(|fault| fault.at(&line.place)));
+        header
+    }
+
+    /// How many columns there are.
+    pub fn width(&self) -> usize {
+        self.words.len()
+    }
+
+    /// Whether `line` is this header once more.
+    pub fn is_repeated_by(&self, line: &Line) -> bool {
+        line.cells.iter().map(|cell| &cell.text).eq(&self.words)
+    }
+
+    /// Whether the table has this column.
+    pub fn has(&self, column: Column) -> bool {
+        self.places.contains_key(&column)
+    }
+
+    /// The cell of `line` in this column; none where the column is absent or the cell empty.
+    pub fn cell<'a>(&self, line: &'a Line, column: Column) -> Option<&'a Cell> {
+        line.cells.get(*self.places.get(&column)?).filter(|cell| !cell.text.is_empty())
+    }
+
+    /// Where the cell of this column stands, or the line where the column is absent.
+    pub fn place<'a>(&self, line: &'a Line, column: Column) -> &'a Place {
+        let cell = self.places.get(&column).and_then(|at| line.cells.get(*at));
+        cell.map_or(&line.place, |cell| &cell.place)
+    }
+
+    fn note(&mut self, at: usize, cell: &Cell, findings: &mut Findings) {
+        if cell.text.is_empty() {
+            let hint = "give it a name, or remove the separator";
+            findings.push(Diagnostic::fault("unnamed-column", "a column has no name").at(&cell.place).hint(hint));
+            return;
+        }
+        let Some((column, name)) = COLUMNS.iter().find(|(_, name)| *name == cell.text) else {
+            findings.push(unknown(cell));
+            return;
+        };
+        if self.places.insert(*column, at).is_some() {
+            let message = format!("column `{name}` stands twice in the header");
+            findings.push(Diagnostic::fault("repeated-column", message).at(&cell.place).hint("keep one of them"));
+        }
+    }
+
+    fn missing<'a>(&'a self, names: &'a Names) -> impl Iterator<Item = Diagnostic> + 'a {
+        let required = REQUIRED.into_iter().filter(|column| !self.has(*column)).map(|column| {
+            let name = column.name();
+            missing(format!("the header has no column `{name}`"), format!("add a column `{name}`"))
+        });
+        required.chain(self.direction()).chain(self.point(names))
+    }
+
+    fn direction(&self) -> Option<Diagnostic> {
+        match (self.has(Column::Polarity), self.has(Column::Field)) {
+            (false, false) => Some(missing(
+                "the header has neither `polarity` nor `field_T`".to_string(),
+                "add a column `polarity` (+ is a field toward you), or `field_T` with the sign on the console"
+                    .to_string(),
+            )),
+            (true, true) => Some(
+                Diagnostic::fault("two-polarities", "the header has both `polarity` and `field_T`")
+                    .hint("keep one of them; the field's magnitude belongs to the point"),
+            ),
+            _ => None,
+        }
+    }
+
+    fn point(&self, names: &Names) -> Option<Diagnostic> {
+        if self.has(Column::Point) || names.points.len() == 1 {
+            return None;
+        }
+        let message = format!("the header has no column `point`, and the device has {} points", names.points.len());
+        Some(missing(message, "add a column `point`".to_string()))
+    }
+}
+
+fn missing(message: String, hint: String) -> Diagnostic {
+    Diagnostic::fault("missing-column", message).hint(hint)
+}
+
+fn unknown(cell: &Cell) -> Diagnostic {
+    let known: Vec<&str> = COLUMNS.iter().map(|(_, name)| *name).collect();
+    let hint = match did_you_mean(&cell.text, known.iter().copied()) {
+        Some(name) => format!("did you mean `{name}`?"),
+        None => format!("the columns are {}", known.join(", ")),
+    };
+    let message = format!("no column is called {}", quoted(&cell.text));
+    Diagnostic::fault("unknown-column", message).at(&cell.place).hint(hint)
+}
