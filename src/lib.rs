@@ -30,3 +30,5 @@ pub mod circuit;
 pub mod resistance;
 
 pub mod measured;
+
+pub mod compare;
