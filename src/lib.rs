@@ -32,3 +32,5 @@ pub mod resistance;
 pub mod measured;
 
 pub mod compare;
+
+pub mod safety;
