@@ -34,3 +34,5 @@ pub mod measured;
 pub mod compare;
 
 pub mod safety;
+
+pub mod figure;

@@ -1,0 +1,189 @@
+//! Channel lines as marks: cut where the potential changes or mixing begins and ends, with the areas of mixing.
+
+use std::collections::BTreeMap;
+use std::collections::BTreeSet;
+
+use crate::figure::chip::ChipDrawing;
+use crate::figure::chip::border::inset_meeting;
+use crate::figure::chip::courses::Part;
+use crate::figure::chip::courses::region_on_right;
+use crate::figure::chip::lanes::Lane;
+use crate::figure::chip::offset::Bit;
+use crate::figure::chip::stretch::Plane;
+use crate::figure::chip::style;
+use crate::figure::chip::vector::add;
+use crate::figure::chip::vector::direction;
+use crate::figure::chip::vector::dot;
+use crate::figure::chip::vector::right_of;
+use crate::figure::chip::vector::sub;
+use crate::figure::chip::vector::times;
+use crate::figure::scene::At;
+use crate::figure::scene::Mark;
+use crate::figure::scene::PathMark;
+use crate::figure::scene::Role;
+use crate::figure::scene::Segment;
+use crate::layout::PieceIdx;
+use crate::network::BundleIdx;
+use crate::number::Rational;
+
+/// A stretch of a line that keeps its potential.
+#[derive(Clone, Debug, PartialEq)]
+pub(super) struct Reach<'a> {
+    pub lane: &'a Lane,
+    pub bits: Vec<Bit>,
+    /// Potential between 0 (outlet) and 1 (inlet); none where nothing fixes it.
+    pub potential: Option<&'a Rational>,
+    /// The bundle in which channels mix here.
+    pub mixing: Option<BundleIdx>,
+}
+
+/// The lines cut into stretches. Neighbouring stretches of a line share their end point exactly.
+pub(super) fn reaches<'a>(
+    drawing: &'a ChipDrawing<'a>,
+    lanes: &'a [Lane],
+    mixing: &BTreeSet<BundleIdx>,
+) -> Vec<Reach<'a>> {
+    let mut all: Vec<Reach<'a>> = Vec::new();
+    for lane in lanes {
+        let first = all.len();
+        for bit in &lane.bits {
+            let bundle = bundle_at(drawing, lane, bit.part);
+            let potential = bundle.and_then(|bundle| drawing.potential(bundle));
+            let mixing = bundle.filter(|bundle| mixing.contains(bundle));
+            let goes_on = all.len() > first;
+            match all.last_mut().filter(|held| goes_on && held.potential == potential && held.mixing == mixing) {
+                Some(held) => held.bits.push(*bit),
+                None => all.push(Reach { lane, bits: vec![*bit], potential, mixing }),
+            }
+        }
+    }
+    all
+}
+
+/// Bundles in which channels of more than one course run.
+pub(super) fn mixing_bundles(drawing: &ChipDrawing<'_>) -> BTreeSet<BundleIdx> {
+    let mut courses: BTreeMap<BundleIdx, BTreeSet<usize>> = BTreeMap::new();
+    for (at, course) in drawing.channels.courses.iter().enumerate() {
+        for step in &course.steps {
+            courses.entry(step.bundle).or_default().insert(at);
+        }
+    }
+    courses.into_iter().filter(|(_, courses)| courses.len() > 1).map(|(bundle, _)| bundle).collect()
+}
+
+/// The bundle of a part of a course; beyond the ends that of the nearest step.
+fn bundle_at(drawing: &ChipDrawing<'_>, lane: &Lane, part: Part) -> Option<BundleIdx> {
+    let steps = &drawing.channels.courses[lane.course].steps;
+    let step = match part {
+        Part::Before => steps.first(),
+        Part::Step(at) => steps.get(at),
+        Part::After => steps.last(),
+    };
+    step.map(|step| step.bundle)
+}
+
+/// The mark of a stretch.
+pub(super) fn stroke(reach: &Reach<'_>, pitch_mm: f64) -> Mark {
+    Mark::Path(PathMark {
+        segments: segments(&reach.bits),
+        stroke: Some(style::channel_pen(reach.potential, pitch_mm)),
+        fill: None,
+        role: Role::Channel { weight: reach.lane.weight },
+    })
+}
+
+fn segments(bits: &[Bit]) -> Vec<Segment> {
+    let start = bits.first().map(|bit| Segment::Move(bit.from));
+    let moves = bits.iter().map(|bit| match bit.bend {
+        Some((first, second)) => Segment::Cubic(first, second, bit.to),
+        None => Segment::Line(bit.to),
+    });
+    start.into_iter().chain(moves).collect()
+}
+
+/// The soft areas in which channels mix: ribbons of the lines of one bundle, which touch, and where lines run on both
+/// sides of a border the strip between them.
+pub(super) fn mixing_areas(
+    drawing: &ChipDrawing<'_>,
+    plane: &Plane,
+    reaches: &[Reach<'_>],
+    pitch_mm: f64,
+) -> Vec<Mark> {
+    let mut bundles: BTreeMap<BundleIdx, Vec<Segment>> = BTreeMap::new();
+    for reach in reaches {
+        let Some(bundle) = reach.mixing else { continue };
+        let points: Vec<At> = reach.bits.iter().flat_map(Bit::straightened).map(|(from, _)| from).collect();
+        let end = reach.bits.last().map(|bit| bit.to);
+        bundles.entry(bundle).or_default().extend(ribbon(points.into_iter().chain(end), pitch_mm * RIBBON));
+    }
+    for (bundle, segments) in &mut bundles {
+        for piece in two_sided(drawing, *bundle) {
+            let chain = plane.chain(&drawing.layout.positions.pieces[piece.0]);
+            segments.extend(ribbon(chain.into_iter(), pitch_mm));
+        }
+    }
+    let mark =
+        |segments| Mark::Path(PathMark { segments, stroke: None, fill: Some(style::MIXING), role: Role::MixingBand });
+    bundles.into_values().map(mark).collect()
+}
+
+/// Pieces along which channels of one bundle have their regions on different sides.
+fn two_sided(drawing: &ChipDrawing<'_>, bundle: BundleIdx) -> BTreeSet<PieceIdx> {
+    let mut sides: BTreeSet<(PieceIdx, bool)> = BTreeSet::new();
+    for course in &drawing.channels.courses {
+        let on_right = region_on_right(drawing.channels.bands[course.band.0].carrier, drawing.polarity);
+        let own = course.steps.iter().filter(|step| step.bundle == bundle);
+        sides.extend(own.map(|step| (step.piece, on_right == step.forward)));
+    }
+    sides.iter().filter(|(piece, right)| *right && sides.contains(&(*piece, false))).map(|(piece, _)| *piece).collect()
+}
+
+/// Half width of a ribbon in pitches: a little over one half, so that ribbons side by side overlap.
+const RIBBON: f64 = 0.53;
+
+/// Outlines around a line, walked so that the line lies on their right: outlines that overlap fill their union. One
+/// outline serves unless a turn is so tight that its inner side would run backward and cancel what it covers.
+fn ribbon(points: impl Iterator<Item = At>, half_mm: f64) -> Vec<Segment> {
+    let mut points: Vec<At> = points.collect();
+    points.dedup();
+    let sides: Vec<(At, At)> = (0..points.len()).map(|at| side_points(&points, at, half_mm)).collect();
+    let runs_back = |at: usize| {
+        let along = sub(points[at + 1], points[at]);
+        dot(sub(sides[at + 1].0, sides[at].0), along) < 0.0 || dot(sub(sides[at + 1].1, sides[at].1), along) < 0.0
+    };
+    if (0..points.len().saturating_sub(1)).any(runs_back) {
+        return points
+            .windows(2)
+            .flat_map(|pair| ring(&[plain_sides(pair, 0, half_mm), plain_sides(pair, 1, half_mm)]))
+            .collect();
+    }
+    ring(&sides)
+}
+
+fn ring(sides: &[(At, At)]) -> Vec<Segment> {
+    let points = sides.iter().rev().map(|side| side.0).chain(sides.iter().map(|side| side.1));
+    let moves = points.enumerate();
+    let drawn = moves.map(|(at, point)| if at == 0 { Segment::Move(point) } else { Segment::Line(point) });
+    drawn.chain([Segment::Close]).collect()
+}
+
+/// The points on both sides of an end of a straight stretch, a little beyond it so that the next one overlaps.
+fn plain_sides(pair: &[At], at: usize, half_mm: f64) -> (At, At) {
+    let along = direction(pair[0], pair[1]);
+    let end = add(pair[at], times(along, if at == 0 { -0.3 } else { 0.3 } * half_mm));
+    let side = times(right_of(along), half_mm);
+    (sub(end, side), add(end, side))
+}
+
+/// The points on both sides of a corner of a broken line.
+fn side_points(points: &[At], at: usize, half_mm: f64) -> (At, At) {
+    let into = direction(points[at.saturating_sub(1)], points[at]);
+    let out = direction(points[at], points[(at + 1).min(points.len() - 1)]);
+    let (into, out) = match at {
+        0 => (out, out),
+        at if at + 1 == points.len() => (into, into),
+        _ => (into, out),
+    };
+    let reach = inset_meeting((right_of(into), half_mm), (right_of(out), half_mm));
+    (add(points[at], times(reach, -1.0)), add(points[at], reach))
+}
