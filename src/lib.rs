@@ -36,3 +36,5 @@ pub mod compare;
 pub mod safety;
 
 pub mod figure;
+
+pub mod report;

@@ -1,0 +1,100 @@
+//! Expected readings as machine output and as a terminal table.
+
+use serde::Serialize;
+
+use crate::device::Device;
+use crate::device::OperatingPoint;
+use crate::quantity::KLITZING;
+use crate::quantity::Polarity;
+use crate::resistance::Expected;
+use crate::resistance::Prediction;
+use crate::resistance::ReadingState;
+
+/// One operating point at one polarity, solved.
+#[derive(Clone, Debug)]
+pub struct SolvedPoint<'a> {
+    /// The operating point.
+    pub point: &'a OperatingPoint,
+    /// The polarity.
+    pub polarity: Polarity,
+    /// The solution, with the readings asked for.
+    pub prediction: Prediction,
+    /// The name of every reading, if it has one.
+    pub names: Vec<Option<String>>,
+}
+
+/// The machine output of `expect`. Keys and their order are fixed; more may be added.
+#[derive(Debug, Serialize)]
+pub struct ExpectedOutput<'a> {
+    format: u32,
+    device: &'a str,
+    klitzing_ohm: f64,
+    points: Vec<PointOutput<'a>>,
+}
+
+#[derive(Debug, Serialize)]
+struct PointOutput<'a> {
+    name: &'a str,
+    polarity: &'static str,
+    contacts: Vec<&'a str>,
+    conductance: Vec<Vec<String>>,
+    readings: Vec<ReadingOutput<'a>>,
+}
+
+#[derive(Debug, Serialize)]
+struct ReadingOutput<'a> {
+    name: Option<&'a str>,
+    current: [&'a str; 2],
+    voltage: [&'a str; 2],
+    exact: Option<String>,
+    h_per_e2: Option<f64>,
+    ohm: Option<f64>,
+    shown_ohm: Option<f64>,
+    shown_quadrature_ohm: Option<f64>,
+    formula: Option<&'a str>,
+    state: &'static str,
+}
+
+/// The machine output for a device and its solved points.
+pub fn expected_output<'a>(device: &'a Device, solved: &'a [SolvedPoint<'a>]) -> ExpectedOutput<'a> {
+    let points = solved.iter().map(|point| point_output(device, point)).collect();
+    ExpectedOutput { format: 1, device: &device.id, klitzing_ohm: KLITZING.value, points }
+}
+
+fn point_output<'a>(device: &'a Device, solved: &'a SolvedPoint<'a>) -> PointOutput<'a> {
+    let matrix = &solved.prediction.conductance.matrix;
+    let row = |row: usize| matrix.row(row).iter().map(ToString::to_string).collect();
+    let readings = solved.prediction.expected.iter().zip(&solved.names);
+    PointOutput {
+        name: &solved.point.name,
+        polarity: solved.polarity.sign(),
+        contacts: device.contacts.iter().map(|contact| contact.name.as_str()).collect(),
+        conductance: (0..matrix.rows()).map(row).collect(),
+        readings: readings.map(|(expected, name)| reading_output(device, expected, name.as_deref())).collect(),
+    }
+}
+
+fn reading_output<'a>(device: &'a Device, expected: &'a Expected, name: Option<&'a str>) -> ReadingOutput<'a> {
+    let names = |pair: [crate::device::ContactIdx; 2]| pair.map(|at| device.contacts[at.0].name.as_str());
+    ReadingOutput {
+        name,
+        current: names(expected.reading.current),
+        voltage: names(expected.reading.voltage),
+        exact: expected.exact.as_ref().map(ToString::to_string),
+        h_per_e2: expected.exact.as_ref().map(|exact| exact.to_f64()),
+        ohm: expected.ohm,
+        shown_ohm: expected.shown_ohm,
+        shown_quadrature_ohm: expected.shown_quadrature_ohm,
+        formula: expected.formula.as_deref(),
+        state: state_words(expected.state),
+    }
+}
+
+/// The words for a state, as machine output and tables have them.
+pub fn state_words(state: ReadingState) -> &'static str {
+    match state {
+        ReadingState::Fine => "fine",
+        ReadingState::NoPath => "no path",
+        ReadingState::Floating => "floating",
+    }
+}

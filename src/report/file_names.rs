@@ -1,0 +1,74 @@
+//! Names of the files of a sheet.
+
+use sha2::Digest;
+use sha2::Sha256;
+
+use crate::cooldown::Cooldown;
+use crate::device::Device;
+use crate::report::Input;
+
+/// Longest part of a name; two of them with revision and ending stay below what file systems take.
+const LONGEST: usize = 60;
+
+/// `DEVICE_COOLDOWN_rN`, or `DEVICE_expected_rN` without a cooldown, with ids made safe for any file system.
+pub fn file_stem(device: &Device, cooldown: Option<&Cooldown>) -> String {
+    let (second, revision) = match cooldown {
+        Some(cooldown) => (safe(&cooldown.id), cooldown.revision),
+        None => ("expected".to_owned(), 1),
+    };
+    format!("{}_{second}_r{revision}", safe(&device.id))
+}
+
+/// What to do about a sheet that exists.
+pub fn next_revision(cooldown: Option<&Cooldown>) -> String {
+    match cooldown {
+        Some(cooldown) => format!(
+            "write `revision = {}` under [cooldown] for a new sheet beside it, or say --replace",
+            cooldown.revision.saturating_add(1)
+        ),
+        None => "choose another folder, or say --replace".to_owned(),
+    }
+}
+
+impl Input {
+    /// A file as it went in.
+    pub fn of(name: &str, bytes: &[u8]) -> Self {
+        Self { name: name.to_owned(), bytes: bytes.len() as u64, sha256: sha256(bytes) }
+    }
+}
+
+/// SHA-256 (FIPS 180-4) as 64 hexadecimal digits.
+fn sha256(bytes: &[u8]) -> String {
+    Sha256::digest(bytes).iter().map(|byte| format!("{byte:02x}")).collect()
+}
+
+/// Letters, digits, `-`, `.` and `_` of ASCII stay; an id that had others, or was too long, gets a short checksum so
+/// that different ids keep different names.
+fn safe(id: &str) -> String {
+    let keep = |c: char| if c.is_ascii_alphanumeric() || matches!(c, '-' | '.' | '_') { c } else { '-' };
+    let plain: String = id.chars().map(keep).take(LONGEST).collect();
+    let plain = plain.trim_start_matches('.');
+    if plain == id { plain.to_owned() } else { format!("{plain}-{}", &sha256(id.as_bytes())[..6]) }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn ids_become_names_that_every_file_system_takes() {
+        assert_eq!(safe("KR-0417"), "KR-0417");
+        for id in ["a/b", "..", "../x", "con:1", "試料", "a b", "", &"x".repeat(500)] {
+            let name = format!("{}_expected_r1", safe(id));
+            let ordinary = |c: char| c.is_ascii_alphanumeric() || "-._".contains(c);
+            assert!(name.chars().all(ordinary) && !name.starts_with('.') && name.len() < 120, "{name}");
+        }
+        assert_ne!(safe("a/b"), safe("a:b"));
+    }
+
+    /// The one-block example of FIPS 180-4, `abc`; value from memory.
+    #[test]
+    fn sha256_follows_the_standard() {
+        assert_eq!(sha256(b"abc"), "ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad");
+    }
+}
