@@ -38,3 +38,5 @@ pub mod safety;
 pub mod figure;
 
 pub mod report;
+
+pub mod sheet;

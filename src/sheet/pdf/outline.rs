@@ -1,0 +1,101 @@
+//! The viewer's table of contents and the names of pages (ISO 32000-1, 12.3.3 and 12.4.2).
+
+use lopdf::Dictionary;
+use lopdf::Object;
+use lopdf::ObjectId;
+use lopdf::text_string;
+
+use crate::sheet::pdf::Bookmark;
+use crate::sheet::pdf::Entries;
+use crate::sheet::pdf::PageLabel;
+use crate::sheet::pdf::PdfDocument;
+use crate::sheet::pdf::dictionary;
+use crate::sheet::pdf::marks::Milli;
+use crate::sheet::pdf::name;
+
+/// Catalog entries for bookmarks and page names.
+pub(super) fn entries(document: &PdfDocument, file: &mut lopdf::Document) -> Entries {
+    let mut entries = Entries::new();
+    let pages = pages(document, file);
+    let root = file.new_object_id();
+    if let Some(branch) = branch(&document.bookmarks, root, &pages, file) {
+        let mut outlines = dictionary([("Type", name("Outlines"))]);
+        branch.hang(&mut outlines, 1);
+        file.set_object(root, outlines);
+        entries.push(("Outlines", root.into()));
+    }
+    let mode = if entries.is_empty() { "UseNone" } else { "UseOutlines" };
+    entries.push(("PageMode", name(mode)));
+    if !document.page_labels.is_empty() {
+        entries.push(("PageLabels", page_labels(&document.page_labels).into()));
+    }
+    entries
+}
+
+/// Object and height in mm of each page.
+fn pages(document: &PdfDocument, file: &lopdf::Document) -> Vec<(ObjectId, f64)> {
+    let heights_mm = document.pages.iter().map(|scene| scene.height_mm);
+    file.get_pages().into_values().zip(heights_mm).collect()
+}
+
+/// The entries below one entry.
+struct Branch {
+    first: ObjectId,
+    last: ObjectId,
+    count: i64,
+}
+
+impl Branch {
+    /// Hangs the branch on the entry above; sign 1 shows it unfolded, −1 folded.
+    fn hang(&self, above: &mut Dictionary, sign: i64) {
+        above.set("First", self.first);
+        above.set("Last", self.last);
+        above.set("Count", sign * self.count);
+    }
+}
+
+/// Writes the entries below `parent`, and what is below them.
+fn branch(
+    bookmarks: &[Bookmark],
+    parent: ObjectId,
+    pages: &[(ObjectId, f64)],
+    file: &mut lopdf::Document,
+) -> Option<Branch> {
+    let known: Vec<(&Bookmark, ObjectId)> =
+        bookmarks.iter().filter(|mark| mark.page < pages.len()).map(|mark| (mark, file.new_object_id())).collect();
+    for (index, &(bookmark, id)) in known.iter().enumerate() {
+        let mut entry = dictionary([
+            ("Title", text_string(&bookmark.title)),
+            ("Parent", parent.into()),
+            ("Dest", destination(bookmark, pages)),
+        ]);
+        if let Some(&(_, previous)) = index.checked_sub(1).and_then(|index| known.get(index)) {
+            entry.set("Prev", previous);
+        }
+        if let Some(&(_, next)) = known.get(index + 1) {
+            entry.set("Next", next);
+        }
+        if let Some(below) = branch(&bookmark.children, id, pages, file) {
+            below.hang(&mut entry, -1);
+        }
+        file.set_object(id, entry);
+    }
+    Some(Branch { first: known.first()?.1, last: known.last()?.1, count: known.len() as i64 })
+}
+
+fn destination(bookmark: &Bookmark, pages: &[(ObjectId, f64)]) -> Object {
+    let Some(&(page, height_mm)) = pages.get(bookmark.page) else { return Object::Null };
+    let top = Milli::from_mm(height_mm - bookmark.y_mm);
+    vec![page.into(), name("XYZ"), 0.into(), top.into(), Object::Null].into()
+}
+
+fn page_labels(labels: &[PageLabel]) -> Dictionary {
+    let mut sorted: Vec<&PageLabel> = labels.iter().collect();
+    sorted.sort_by_key(|label| label.first_page);
+    let range = |label: &PageLabel| {
+        let numbers = i64::from(label.first_number.max(1));
+        dictionary([("S", name("D")), ("P", text_string(&label.prefix)), ("St", numbers.into())])
+    };
+    let numbers = sorted.into_iter().flat_map(|label| [(label.first_page as i64).into(), range(label).into()]);
+    dictionary([("Nums", numbers.collect::<Vec<Object>>().into())])
+}
