@@ -40,3 +40,5 @@ pub mod figure;
 pub mod report;
 
 pub mod sheet;
+
+pub mod archive;
