@@ -42,3 +42,5 @@ pub mod report;
 pub mod sheet;
 
 pub mod archive;
+
+pub mod files;

@@ -1,0 +1,13 @@
+//! The only room that touches the disk.
+//!
+//! Owns: reading whole files, testing a target before the work, and writing a group of files whole or not at all. Takes
+//! paths and bytes; gives bytes or a finding in the user's words. Knows nothing of what is in the files.
+
+mod read;
+mod write;
+
+pub use read::read;
+pub use read::sibling;
+pub use write::Existing;
+pub use write::Target;
+pub use write::WriteFault;

@@ -1,0 +1,41 @@
+//! Reading a file whole.
+
+use std::fs::File;
+use std::io::Read;
+use std::path::Path;
+use std::path::PathBuf;
+
+use crate::diagnostic::Diagnostic;
+
+/// No file of ours is larger; more is refused before it is read.
+const LARGEST_BYTES: u64 = 64 << 20;
+
+/// The bytes of a file. A finding without a place when it cannot be read.
+pub fn read(path: &Path) -> Result<Vec<u8>, Diagnostic> {
+    let fault = |error: std::io::Error| {
+        Diagnostic::fault("unreadable-file", format!("cannot read {}: {}", path.display(), reason(&error)))
+            .hint("check the name and the folder, and that you may read the file")
+    };
+    if path.is_dir() {
+        return Err(Diagnostic::fault("unreadable-file", format!("{} is a folder", path.display())).hint("name a file"));
+    }
+    let mut bytes = Vec::new();
+    let file = File::open(path).map_err(fault)?;
+    file.take(LARGEST_BYTES + 1).read_to_end(&mut bytes).map_err(fault)?;
+    if bytes.len() as u64 > LARGEST_BYTES {
+        return Err(Diagnostic::fault("large-file", format!("{} is larger than 64 MB", path.display()))
+            .hint("a device, cooldown or readings file has a few kilobytes; is this the right file?"));
+    }
+    Ok(bytes)
+}
+
+/// A file named in another file: relative names are looked up in that file's folder.
+pub fn sibling(of: &Path, name: &str) -> PathBuf {
+    of.parent().unwrap_or(Path::new("")).join(name)
+}
+
+/// The operating system's reason, without its number.
+pub(super) fn reason(error: &std::io::Error) -> String {
+    let text = error.to_string();
+    text.split(" (os error").next().unwrap_or(&text).to_owned()
+}
