@@ -44,3 +44,5 @@ pub mod sheet;
 pub mod archive;
 
 pub mod files;
+
+pub mod cli;

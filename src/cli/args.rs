@@ -1,0 +1,95 @@
+//! The command line.
+
+use std::path::PathBuf;
+
+use clap::Args;
+use clap::Parser;
+use clap::Subcommand;
+use clap::ValueEnum;
+
+/// Expected and measured resistances of gated quantum Hall devices, on one sheet.
+#[derive(Debug, Parser)]
+#[command(version, about, disable_help_subcommand = true, max_term_width = 100)]
+pub struct Arguments {
+    /// What to do.
+    #[command(subcommand)]
+    pub command: Command,
+}
+
+/// The commands.
+#[derive(Debug, Subcommand)]
+pub enum Command {
+    /// Solve, compare, draw and write the characterisation sheet (PDF, HTML) with its record (JSON)
+    Sheet(SheetOptions),
+    /// Print what every reading should be, at both polarities
+    Expect(ExpectOptions),
+    /// Print which readings show one region alone, at each polarity
+    Isolate(IsolateOptions),
+}
+
+/// Options of `sheet`.
+#[derive(Debug, Args)]
+#[command(after_help = "Example:\n  edgesheet sheet demo-devices/top-gated-bar/device.toml \
+                        demo-devices/top-gated-bar/cooldown.toml -o target/sheets --replace")]
+pub struct SheetOptions {
+    /// Device file
+    pub device: PathBuf,
+    /// Cooldown file
+    pub cooldown: Option<PathBuf>,
+    /// Folder to write into; made if it is missing
+    #[arg(short, long, value_name = "DIR")]
+    pub output: PathBuf,
+    /// Replace a sheet of the same name
+    #[arg(long)]
+    pub replace: bool,
+    /// Paper of the PDF
+    #[arg(long, value_enum, default_value_t = PaperSize::A4)]
+    pub paper: PaperSize,
+    /// Fixed limit in u beyond which a reading disagrees, in place of the one that fits the number of readings
+    #[arg(long, value_name = "U")]
+    pub limit: Option<f64>,
+    /// Exit with code 1 when the data disagree
+    #[arg(long)]
+    pub judge: bool,
+}
+
+/// Options of `expect`.
+#[derive(Debug, Args)]
+#[command(after_help = "Example:\n  edgesheet expect demo-devices/top-gated-bar/device.toml --reading 1-4,2-5")]
+pub struct ExpectOptions {
+    /// Device file
+    pub device: PathBuf,
+    /// Cooldown file: adds what its meters will show
+    pub cooldown: Option<PathBuf>,
+    /// Every unordered current pair with every unordered voltage pair
+    #[arg(long)]
+    pub all: bool,
+    /// Only this reading: current pair, voltage pair, such as 1-4,2-5; may be given again
+    #[arg(long, value_name = "I-J,K-L", conflicts_with = "all")]
+    pub reading: Vec<String>,
+    /// Machine output
+    #[arg(long)]
+    pub json: bool,
+}
+
+/// Options of `isolate`.
+#[derive(Debug, Args)]
+#[command(after_help = "Example:\n  edgesheet isolate demo-devices/top-gated-bar/device.toml TG")]
+pub struct IsolateOptions {
+    /// Device file
+    pub device: PathBuf,
+    /// Gate, step, overlap such as TG+BG, or bulk
+    pub region: String,
+    /// All readings that show it alone, not only the best
+    #[arg(long)]
+    pub all: bool,
+}
+
+/// Paper sizes.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, ValueEnum)]
+pub enum PaperSize {
+    /// 210 × 297 mm
+    A4,
+    /// 8.5 × 11 inches
+    Letter,
+}

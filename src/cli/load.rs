@@ -1,0 +1,90 @@
+//! From paths to checked inputs: the head of every command.
+
+use std::path::Path;
+use std::sync::Arc;
+
+use crate::cli::Failure;
+use crate::cooldown::Cooldown;
+use crate::device::Device;
+use crate::diagnostic::Diagnostic;
+use crate::diagnostic::Findings;
+use crate::diagnostic::Noted;
+use crate::diagnostic::Place;
+use crate::diagnostic::Source;
+use crate::files;
+use crate::layout::Layout;
+use crate::measured::MeasuredReading;
+use crate::network::Network;
+
+/// A file that went in, as it was.
+pub struct InputFile {
+    /// Its name without folders.
+    pub name: String,
+    /// Its bytes.
+    pub bytes: Vec<u8>,
+}
+
+/// Everything that was read and checked.
+pub struct Loaded {
+    pub device: Device,
+    pub layout: Layout,
+    pub network: Network,
+    pub cooldown: Option<Cooldown>,
+    pub measured: Vec<MeasuredReading>,
+    pub inputs: Vec<InputFile>,
+    pub notices: Vec<Diagnostic>,
+}
+
+/// Reads and checks a device file and, where given, a cooldown file with its readings; all faults at once.
+pub fn load(device: &Path, cooldown: Option<&Path>) -> Result<Loaded, Failure> {
+    let mut findings = Findings::default();
+    let mut inputs = Vec::new();
+    let device =
+        source((device, None), &mut inputs, &mut findings).and_then(|s| findings.take(crate::device::from_source(&s)));
+    let layout = device.as_ref().and_then(|device| findings.take(crate::layout::layout(device)));
+    let mut measured = Some(Vec::new());
+    let mut read_cooldown = None;
+    if let Some(path) = cooldown {
+        let text = source((path, None), &mut inputs, &mut findings);
+        read_cooldown = device
+            .as_ref()
+            .zip(text)
+            .and_then(|(device, text)| findings.take(crate::cooldown::from_source(&text, device)));
+        measured = device
+            .as_ref()
+            .zip(read_cooldown.as_ref())
+            .and_then(|(device, cooldown)| readings(path, device, cooldown, (&mut inputs, &mut findings)));
+    }
+    let (Some(device), Some(layout), Some(measured)) = (device, layout, measured) else {
+        return Err(Failure::Input(findings.into_faults()));
+    };
+    let Noted { notices, .. } = findings.finish(()).map_err(Failure::Input)?;
+    let network = crate::network::network(&layout, device.contacts.len());
+    Ok(Loaded { device, layout, network, cooldown: read_cooldown, measured, inputs, notices })
+}
+
+fn readings(
+    beside: &Path,
+    device: &Device,
+    cooldown: &Cooldown,
+    (inputs, findings): (&mut Vec<InputFile>, &mut Findings),
+) -> Option<Vec<MeasuredReading>> {
+    let Some(name) = &cooldown.readings_file else { return Some(Vec::new()) };
+    let text = source((&files::sibling(beside, name), cooldown.readings_place.as_ref()), inputs, findings)?;
+    findings.take(crate::measured::from_source(&text, &crate::cooldown::Names::of(device, Some(cooldown))))
+}
+
+/// A file, and where another file names it if one does.
+fn source(
+    (path, named): (&Path, Option<&Place>),
+    inputs: &mut Vec<InputFile>,
+    findings: &mut Findings,
+) -> Option<Arc<Source>> {
+    let placed = |fault: Diagnostic| if let Some(place) = named { fault.at(place) } else { fault };
+    let bytes = files::read(path).map_err(|fault| findings.push(placed(fault))).ok()?;
+    let name = path.file_name().unwrap_or(path.as_os_str()).to_string_lossy().into_owned();
+    let read = crate::syntax::from_bytes(&path.display().to_string(), &bytes);
+    let source = findings.take(read.map(|value| Noted { value, notices: Vec::new() }))?;
+    inputs.push(InputFile { name, bytes });
+    Some(source)
+}

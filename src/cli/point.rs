@@ -1,0 +1,123 @@
+//! Operating points solved at a polarity: the middle of every command.
+
+use crate::circuit::Budget;
+use crate::cli::load::Loaded;
+use crate::device::ContactIdx;
+use crate::device::Mixing;
+use crate::device::OperatingPoint;
+use crate::quantity::Polarity;
+use crate::report;
+use crate::report::Beside;
+use crate::report::IsolatedRegion;
+use crate::report::SolvedPoint;
+use crate::resistance::Candidates;
+use crate::resistance::ClosedForms;
+use crate::resistance::Expected;
+use crate::resistance::Reading;
+use crate::resistance::Setup;
+
+/// The setting of a point at a polarity, with the circuit of the cooldown if there is one.
+pub fn setup(loaded: &Loaded, point: &OperatingPoint, polarity: Polarity) -> Setup {
+    let operating = crate::network::operating(&loaded.network, &loaded.device, point, polarity);
+    Setup { operating, circuit: loaded.cooldown.as_ref().map(crate::circuit::Circuit::of) }
+}
+
+/// The closed forms of a setting.
+pub fn forms(loaded: &Loaded, point: &OperatingPoint, setup: &Setup) -> ClosedForms {
+    let regions = crate::resistance::filling_regions(&loaded.network, &loaded.device, point);
+    ClosedForms::of(&loaded.network, &setup.operating, regions)
+}
+
+/// Every point at both polarities, `+` first, with the readings asked for at each.
+pub fn solve_all<'a>(loaded: &'a Loaded, asked: impl Fn(usize) -> Asked) -> Vec<SolvedPoint<'a>> {
+    solved(loaded, asked).into_iter().map(|solution| solution.solved).collect()
+}
+
+/// The same with what a sheet says beside the solutions.
+pub fn solve_all_for_sheet<'a>(
+    loaded: &'a Loaded,
+    asked: impl Fn(usize) -> Asked,
+) -> (Vec<SolvedPoint<'a>>, Vec<Beside>) {
+    let with_beside = |solution: Solution<'a>| {
+        let beside = beside(loaded, &solution);
+        (solution.solved, beside)
+    };
+    solved(loaded, asked).into_iter().map(with_beside).unzip()
+}
+
+/// Readings with their names, if they have one.
+pub struct Asked {
+    pub readings: Vec<Reading>,
+    pub names: Vec<Option<String>>,
+}
+
+struct Solution<'a> {
+    solved: SolvedPoint<'a>,
+    setup: Setup,
+    forms: ClosedForms,
+}
+
+fn solved<'a>(loaded: &'a Loaded, asked: impl Fn(usize) -> Asked) -> Vec<Solution<'a>> {
+    let points = loaded.device.points.iter().enumerate();
+    let both = points.flat_map(|(at, point)| Polarity::BOTH.map(|polarity| (at, point, polarity)));
+    both.map(|(at, point, polarity)| solve(loaded, point, polarity, asked(at))).collect()
+}
+
+fn solve<'a>(loaded: &'a Loaded, point: &'a OperatingPoint, polarity: Polarity, asked: Asked) -> Solution<'a> {
+    let setup = setup(loaded, point, polarity);
+    let forms = forms(loaded, point, &setup);
+    let mut prediction = crate::resistance::predict(&loaded.network, &setup, &asked.readings);
+    prediction.put_closed_forms(&forms);
+    Solution { solved: SolvedPoint { point, polarity, prediction, names: asked.names }, setup, forms }
+}
+
+fn beside(loaded: &Loaded, solution: &Solution) -> Beside {
+    let prediction = &solution.solved.prediction;
+    Beside {
+        isolated: isolated(loaded, solution),
+        other_mixing: other_mixing(loaded, &solution.solved),
+        corrections: prediction.corrections(&solution.setup),
+        two_terminal: two_terminal(loaded, solution),
+    }
+}
+
+/// Budgets cost two solutions for every line, so that only one reading gets one.
+fn two_terminal(loaded: &Loaded, solution: &Solution) -> Option<(Expected, Budget)> {
+    let readings = solution.solved.prediction.expected.iter().map(|expected| &expected.reading);
+    let whole = |reading: &&Reading| reading.voltage.iter().all(|contact| reading.current.contains(contact));
+    let reading = readings.into_iter().find(whole)?.clone();
+    let mut prediction = crate::resistance::predict(&loaded.network, &solution.setup, &[reading]);
+    let budget = prediction.budgets(&solution.setup).pop()??;
+    prediction.expected.pop().zip(Some(budget))
+}
+
+/// One per region but the bulk: the reading to use.
+fn isolated(loaded: &Loaded, Solution { solved, setup, forms }: &Solution) -> Vec<IsolatedRegion> {
+    let drawn = drawn_current(solved);
+    let candidates = Candidates::usual(loaded.device.contacts.len(), drawn);
+    let best = |region| {
+        let found = crate::resistance::isolating(&loaded.network, setup, forms, (region, candidates));
+        let (reading, formula) = report::preferred(forms, &found, drawn)?;
+        let mut expected = crate::resistance::predict(&loaded.network, setup, &[reading]).expected;
+        expected.pop().map(|expected| Expected { formula: Some(formula), ..expected })
+    };
+    let regions = forms.regions().iter().enumerate().filter(|(_, region)| !region.is_bulk());
+    regions.map(|(at, region)| IsolatedRegion { name: region.name.clone(), best: best(at) }).collect()
+}
+
+/// The same readings with full mixing along the rim where none is in use, and the other way round.
+fn other_mixing(loaded: &Loaded, solved: &SolvedPoint) -> Vec<Expected> {
+    let mut point = solved.point.clone();
+    point.edge.rim = match point.edge.rim {
+        Mixing::None => Mixing::Full,
+        Mixing::Full => Mixing::None,
+    };
+    let readings: Vec<Reading> = solved.prediction.expected.iter().map(|expected| expected.reading.clone()).collect();
+    crate::resistance::predict(&loaded.network, &setup(loaded, &point, solved.polarity), &readings).expected
+}
+
+/// The drawing shows the current leads of the first reading.
+pub fn drawn_current(solved: &SolvedPoint) -> [ContactIdx; 2] {
+    let first = solved.prediction.expected.first();
+    first.map_or([ContactIdx(0), ContactIdx(1)], |expected| expected.reading.current)
+}

@@ -1,0 +1,98 @@
+//! What the terminal shows: answers on standard output, findings on standard error.
+
+use std::io::BufWriter;
+use std::io::ErrorKind;
+use std::io::Write;
+use std::path::PathBuf;
+use std::process::ExitCode;
+
+use serde::Serialize;
+
+use crate::cli::Failure;
+use crate::cli::Finished;
+use crate::diagnostic::Colour;
+use crate::diagnostic::Diagnostic;
+use crate::diagnostic::Faults;
+use crate::diagnostic::show;
+use crate::files::WriteFault;
+use crate::report::Report;
+
+/// Answers as text.
+pub fn text(text: &str) -> Result<Finished, Failure> {
+    let mut out = std::io::stdout().lock();
+    ended(out.write_all(text.as_bytes()).and_then(|()| out.flush()))
+}
+
+/// Machine output, one JSON value with a line end, written as it is made: it may have hundreds of megabytes.
+pub fn json(value: &impl Serialize) -> Result<Finished, Failure> {
+    let mut out = BufWriter::new(std::io::stdout().lock());
+    let written = serde_json::to_writer_pretty(&mut out, value).map_err(std::io::Error::from);
+    ended(written.and_then(|()| out.write_all(b"\n")).and_then(|()| out.flush()))
+}
+
+/// A closed pipe is the reader's choice, not a failure; an answer cut short by a full disk is one.
+fn ended(written: std::io::Result<()>) -> Result<Finished, Failure> {
+    match written {
+        Err(error) if error.kind() != ErrorKind::BrokenPipe => {
+            let path = PathBuf::from("the answer");
+            Err(Failure::Write(WriteFault::Refused { path, reason: error.kind().to_string() }, None))
+        }
+        _ => Ok(Finished::Fine),
+    }
+}
+
+/// The verdict and the files written.
+pub fn written(report: &Report, paths: &[PathBuf]) -> Result<Finished, Failure> {
+    let mut lines = vec![crate::sheet::plain(&report.verdict.sentence)];
+    lines.extend(paths.iter().map(|path| format!("wrote {}", path.display())));
+    text(&(lines.join("\n") + "\n"))
+}
+
+/// Notices, so that nothing a user wrote is passed over in silence.
+pub fn notices(notices: &[Diagnostic]) {
+    findings(notices);
+}
+
+/// Says why a command failed; gives its exit code.
+pub fn failure(failure: &Failure) -> ExitCode {
+    match failure {
+        Failure::Input(Faults(list)) => {
+            findings(list);
+            ExitCode::from(2)
+        }
+        Failure::Write(fault, advice) => {
+            findings(&[write_fault(fault, advice.as_deref())]);
+            ExitCode::from(3)
+        }
+    }
+}
+
+/// Help and version go to standard output, mistakes on the command line to standard error.
+pub fn usage(error: &clap::Error) -> ExitCode {
+    let _ = error.print();
+    if error.use_stderr() { ExitCode::from(2) } else { ExitCode::SUCCESS }
+}
+
+fn write_fault(fault: &WriteFault, advice: Option<&str>) -> Diagnostic {
+    let finding = match fault {
+        WriteFault::Exists(paths) => {
+            let names: Vec<String> = paths.iter().map(|path| path.display().to_string()).collect();
+            Diagnostic::fault("sheet-exists", format!("not replaced: {}", names.join(", ")))
+        }
+        WriteFault::Refused { path, reason } => {
+            Diagnostic::fault("cannot-write", format!("cannot write {}: {reason}", path.display()))
+        }
+    };
+    match advice {
+        Some(advice) => finding.hint(advice),
+        None => finding,
+    }
+}
+
+fn findings(list: &[Diagnostic]) {
+    let coloured = anstream::AutoStream::choice(&std::io::stderr()) != anstream::ColorChoice::Never;
+    let text = show(list, if coloured { Colour::Coloured } else { Colour::Plain });
+    if !list.is_empty() {
+        let _ = anstream::stderr().lock().write_all(format!("{text}\n\n").as_bytes());
+    }
+}
