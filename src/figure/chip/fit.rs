@@ -69,11 +69,13 @@ pub(super) fn best(drawing: &ChipDrawing<'_>) -> Scene {
     let mut best: Option<(usize, Scene)> = None;
     for margins in MARGINS_MM {
         let Some((scene, lack)) = fit.scene(margins) else { continue };
-        if lack == 0 {
-            return scene;
+        // Once more margin gives no label a place, still more would only take room from the lines.
+        if best.as_ref().is_some_and(|(least, _)| lack >= *least) {
+            break;
         }
-        if best.as_ref().is_none_or(|(least, _)| lack < *least) {
-            best = Some((lack, scene));
+        best = Some((lack, scene));
+        if lack == 0 {
+            break;
         }
     }
     best.map_or(Scene { width_mm: drawing.size_mm.0, height_mm: 0.0, marks: Vec::new() }, |(_, scene)| scene)
