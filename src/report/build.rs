@@ -65,6 +65,7 @@ struct TableFields {
     states: bool,
     circuit: bool,
     repeated: bool,
+    formless: bool,
 }
 
 fn point_report(
@@ -112,7 +113,14 @@ fn table_fields(rows: &[TableRow]) -> TableFields {
         states: cells().any(|cell| cell.state.is_some()),
         circuit: false,
         repeated: rows.windows(2).any(|pair| pair[0].name == pair[1].name),
+        formless: rows.iter().any(is_formless),
     }
+}
+
+/// Whether a row has a number and, at a polarity where it has one, no closed form.
+fn is_formless(row: &TableRow) -> bool {
+    let numbers = [&row.toward, &row.away].into_iter().any(|cell| cell.exact.is_some());
+    numbers && row.formula.as_ref().is_none_or(|formula| formula.contains('–'))
 }
 
 /// The point that the answer page shows: the one whose disagreement is largest, else the first.

@@ -32,7 +32,18 @@ pub fn expected_table(device: &Device, cooldown: Option<&Cooldown>, solved: &[So
         }
     }
     text.push_str(&closing(cooldown));
+    if solved.iter().flat_map(|point| &point.prediction.expected).any(is_formless) {
+        text.push_str(FORMLESS);
+    }
     text
+}
+
+/// Why a reading may have no closed form.
+const FORMLESS: &str = "\u{2013}: no closed form; within this ordering of the fillings the reading is no sum of \
+                        a/\u{3bd}.\n";
+
+fn is_formless(expected: &Expected) -> bool {
+    expected.exact.is_some() && expected.formula.is_none()
 }
 
 fn closing(cooldown: Option<&Cooldown>) -> String {
@@ -70,7 +81,7 @@ fn reading_row(device: &Device, name: Option<&str>, (plus, minus): (&Expected, &
     let cells = [plus, minus].into_iter().flat_map(|expected| cells(expected, shows)).collect();
     let form = match (&plus.formula, &minus.formula) {
         (Some(plus), Some(minus)) if plus == minus => plus.clone(),
-        (None, None) => String::new(),
+        (None, None) if plus.state != ReadingState::Fine && minus.state != ReadingState::Fine => String::new(),
         (plus, minus) => {
             let side = |form: &Option<String>| form.clone().unwrap_or_else(|| "\u{2013}".to_owned());
             format!("{} | {}", side(plus), side(minus))

@@ -98,3 +98,22 @@ fn isolate_knows_the_regions() {
     assert!(answer.contains("QG has no filling of its own at this point"), "{answer}");
     assert!(answer.contains("1/ν(QG)"), "{answer}");
 }
+
+/// Two gates of opposite signs side by side behind a third: the current divides between them, and the two-terminal
+/// resistance is no sum over regions (own algebra: `raster` finds the same matrix, `forms` that no sum fits such bars).
+#[test]
+fn a_reading_without_a_closed_form_says_why() {
+    let folder = fresh("formless");
+    let ends = "[[contact]]\nname = \"1\"\nedge = \"left\"\n[[contact]]\nname = \"2\"\nedge = \"right\"\n";
+    let gates = "[[gate]]\nname = \"A\"\nfrom_um = 100\nto_um = 200\n\
+                 [[gate]]\nname = \"B\"\noutline_um = [[300, 0], [400, 0], [400, 50], [300, 50]]\n\
+                 [[gate]]\nname = \"C\"\noutline_um = [[300, 50], [400, 50], [400, 100], [300, 100]]\n";
+    let text = format!(
+        "format = 1\n[device]\nid = \"NF\"\n[mesa]\nshape = \"bar\"\nlength_um = 600\nwidth_um = 100\n{ends}{gates}\
+         [[point]]\nname = \"p\"\nbulk = 4\nfillings = {{ A = -2, B = -3, C = 2 }}\n"
+    );
+    fs::write(folder.join("device.toml"), text).unwrap();
+    let answer = fits(&folder, "expect device.toml");
+    assert!(answer.contains("no closed form"), "{answer}");
+    assert!(!run(&with_demo("with-forms", "top-gated-bar"), "expect device.toml").answer().contains("no closed form"));
+}
