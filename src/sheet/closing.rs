@@ -179,10 +179,12 @@ fn provenance(lines: &mut Vec<Line>, report: &Report) {
     let small = Style::text(grid::SMALL_PT);
     section(lines, &words.provenance, &[format!("{}. {}", provenance.program, provenance.repeat)]);
     for input in &provenance.inputs {
-        // Two halves: a checksum is one word, and too long for a line.
+        paragraph(lines, &format!("{}, {} {}", input.name, input.bytes, words.bytes), Style::bold(grid::SMALL_PT), 0.6);
+        flow::keep_last(lines);
+        // Two halves, each on a line of its own.
         let (first, second) = input.sha256.split_at_checked(32).unwrap_or((&input.sha256, ""));
-        let named = format!("{}, {} {}, {}", input.name, input.bytes, words.bytes, words.sha256);
-        paragraph(lines, &format!("{named} {first} {second}"), Style::text(grid::LEAST_PT), 0.6);
+        let sum = format!("{} {first} {second}", words.sha256);
+        paragraph(lines, &sum, Style::text(grid::LEAST_PT).grey(), 0.1);
     }
     for line in &provenance.constants {
         paragraph(lines, line, small, 1.0);

@@ -160,3 +160,18 @@ fn transcendental_functions_are_the_same_on_every_machine() {
         }
     }
 }
+
+/// A user's mistake never panics: shipped code asks no value to be there that may be missing.
+#[test]
+fn shipped_code_does_not_panic_on_purpose() {
+    for (path, text) in sources() {
+        let only_tests = ["tests.rs", "sample.rs", "audit.rs", "fixture.rs", "overlap.rs", "random.rs"];
+        let is_test =
+            only_tests.iter().any(|name| path.ends_with(name)) || path.components().any(|p| p.as_os_str() == "tests");
+        let shipped = text.split("#[cfg(test)]").next().unwrap();
+        let code: Vec<&str> = shipped.lines().filter(|line| !line.trim_start().starts_with("//")).collect();
+        for word in [".unwrap()", ".expect(", "panic!(", "unreachable!(", "todo!(", "unimplemented!("] {
+            assert!(is_test || !code.iter().any(|line| line.contains(word)), "{path:?} holds {word}");
+        }
+    }
+}
