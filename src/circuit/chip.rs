@@ -16,9 +16,9 @@ impl Chip {
     /// The diagonal is minus the rest of its row: a current that only a rounded digit of the diagonal drives would show
     /// as a false resistance.
     pub fn of(conductance: &Conductance) -> Self {
-        let contacts = conductance.contacts;
+        let contacts = conductance.contacts();
         let mut matrix = DMatrix::from_fn(contacts, contacts, |row, column| {
-            if row == column { 0.0 } else { conductance.matrix[(row, column)].to_f64() }
+            if row == column { 0.0 } else { conductance.entry(row, column).to_f64() }
         });
         for row in 0..contacts {
             matrix[(row, row)] = -matrix.row(row).sum();

@@ -109,7 +109,7 @@ fn isolated(loaded: &Loaded, Solution { solved, setup, forms }: &Solution) -> Ve
 fn other_mixing(loaded: &Loaded, solved: &SolvedPoint) -> Vec<Expected> {
     let mut point = solved.point.clone();
     point.edge.rim = match point.edge.rim {
-        Mixing::None => Mixing::Full,
+        Mixing::None | Mixing::Over(_) => Mixing::Full,
         Mixing::Full => Mixing::None,
     };
     let readings: Vec<Reading> = solved.prediction.expected.iter().map(|expected| expected.reading.clone()).collect();

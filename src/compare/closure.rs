@@ -143,6 +143,7 @@ mod tests {
                 reading: Reading::new(current, voltage),
                 state: ReadingState::Fine,
                 exact: None,
+                h_per_e2: None,
                 ohm: None,
                 shown_ohm: Some(value / 2.0),
                 shown_quadrature_ohm: None,

@@ -107,6 +107,7 @@ mod tests {
             reading: Reading::new([ContactIdx(0), ContactIdx(3)], [ContactIdx(1), ContactIdx(5)]),
             state: if shown_ohm.is_some() { ReadingState::Fine } else { ReadingState::NoPath },
             exact: None,
+            h_per_e2: None,
             ohm: shown_ohm,
             shown_ohm,
             shown_quadrature_ohm: None,

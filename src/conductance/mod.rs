@@ -1,10 +1,12 @@
 //! The conductance matrix in e²/h, its sum rules, and the potential shares of every bundle.
 //!
-//! Owns: [`Conductance`]. Takes `Channels`, gives the exact matrix and shares. Must never contain coordinates, SI units
-//! or data.
+//! Owns: [`Conductance`]. Takes `Channels`, gives matrix and shares, exact where the channels are. Must never contain
+//! coordinates, SI units or data.
 
 use crate::number::Matrix;
+use crate::number::Number;
 use crate::number::Rational;
+use crate::number::Scalar;
 
 mod solve;
 
@@ -12,12 +14,52 @@ pub use solve::conductance;
 
 /// The device seen from its contacts.
 #[derive(Clone, Debug, PartialEq)]
-pub struct Conductance {
-    /// Number of contacts.
-    pub contacts: usize,
+pub enum Conductance {
+    /// In fractions.
+    Exact(Solved<Rational>),
+    /// In floats: something entered that is no fraction.
+    Float(Solved<f64>),
+}
+
+/// Matrix and shares in one kind of number.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Solved<S> {
     /// G\[i\]\[j\] in e²/h: current into the device at contact i per potential at contact j.
-    pub matrix: Matrix<Rational>,
+    pub matrix: Matrix<S>,
     /// For every bundle its potential as a combination of contact potentials: (contact, share), no zero shares,
     /// shares sum to 1. None for a loop that no contact feeds.
-    pub shares: Vec<Option<Vec<(usize, Rational)>>>,
+    pub shares: Vec<Option<Vec<(usize, S)>>>,
+}
+
+impl Conductance {
+    /// Number of contacts.
+    pub fn contacts(&self) -> usize {
+        match self {
+            Self::Exact(solved) => solved.contacts(),
+            Self::Float(solved) => solved.contacts(),
+        }
+    }
+
+    /// G\[row\]\[column\] in e²/h.
+    pub fn entry(&self, row: usize, column: usize) -> Number {
+        match self {
+            Self::Exact(solved) => solved.matrix[(row, column)].clone().into(),
+            Self::Float(solved) => solved.matrix[(row, column)].into(),
+        }
+    }
+
+    /// Matrix and shares in fractions, where they are.
+    pub fn exact(&self) -> Option<&Solved<Rational>> {
+        match self {
+            Self::Exact(solved) => Some(solved),
+            Self::Float(_) => None,
+        }
+    }
+}
+
+impl<S: Scalar> Solved<S> {
+    /// Number of contacts.
+    pub fn contacts(&self) -> usize {
+        self.matrix.rows()
+    }
 }

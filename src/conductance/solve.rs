@@ -4,49 +4,62 @@ use std::collections::BTreeMap;
 use std::collections::BTreeSet;
 
 use crate::conductance::Conductance;
+use crate::conductance::Solved;
 use crate::network::Bundle;
 use crate::network::BundleIdx;
 use crate::network::Channels;
 use crate::network::Feed;
+use crate::network::Junctions;
+use crate::network::Wired;
+use crate::number::Balance;
 use crate::number::Matrix;
-use crate::number::Rational;
-use crate::number::solve;
+use crate::number::Scalar;
 
 /// Share of every contact in one potential: no zeros.
-type Share = Vec<(usize, Rational)>;
+type Share<S> = Vec<(usize, S)>;
 
-/// The conductance matrix of a device, exactly.
+/// The conductance matrix of a device, exactly where its channels are exact.
 ///
 /// Every bundle's potential is the mean of what feeds it, weighted by conductance; a contact's current is what it emits
 /// less what it absorbs: I_i = (e²/h) \[Σ emitted V_i − Σ absorbed μ\] (M. Büttiker, Phys. Rev. Lett. 57, 1761 (1986)).
 pub fn conductance(channels: &Channels) -> Conductance {
-    let shares = shares(channels);
-    Conductance { contacts: channels.terminals.len(), matrix: matrix(channels, &shares), shares }
+    match &channels.junctions {
+        Junctions::Exact(wired) => Conductance::Exact(solved(wired)),
+        Junctions::Float(wired) => Conductance::Float(solved(wired)),
+    }
 }
 
-fn matrix(channels: &Channels, shares: &[Option<Share>]) -> Matrix<Rational> {
-    let contacts = channels.terminals.len();
-    let mut matrix = Matrix::zero(contacts, contacts);
-    for (row, terminal) in channels.terminals.iter().enumerate() {
-        matrix[(row, row)] += &terminal.emitted;
+fn solved<S: Scalar>(wired: &Wired<S>) -> Solved<S> {
+    let shares = shares(wired);
+    Solved { matrix: matrix(wired, &shares), shares }
+}
+
+/// Every entry of the diagonal is what the other contacts take, so that rows sum to zero in floats too.
+fn matrix<S: Scalar>(wired: &Wired<S>, shares: &[Option<Share<S>>]) -> Matrix<S> {
+    let contacts = wired.terminals.len();
+    let mut matrix = Matrix::<S>::zero(contacts, contacts);
+    for (row, terminal) in wired.terminals.iter().enumerate() {
         for (bundle, weight) in &terminal.absorbed {
-            for (column, share) in shares[bundle.0].iter().flatten() {
-                matrix[(row, *column)] -= &(share * weight);
+            let weight = S::nearest(weight);
+            for (column, share) in shares[bundle.0].iter().flatten().filter(|(column, _)| *column != row) {
+                let passed = share.clone() * weight.clone();
+                matrix[(row, *column)].increase(&-passed.clone());
+                matrix[(row, row)].increase(&passed);
             }
         }
     }
     matrix
 }
 
-fn shares(channels: &Channels) -> Vec<Option<Share>> {
-    let contacts = channels.terminals.len();
-    let bundles = &channels.bundles;
+fn shares<S: Scalar>(wired: &Wired<S>) -> Vec<Option<Share<S>>> {
+    let contacts = wired.terminals.len();
+    let bundles = &wired.bundles;
     let fed = fed_by_contacts(bundles);
     let sources: Vec<Source> = (0..bundles.len()).map(|at| source(bundles, BundleIdx(at))).collect();
     let mixers: Vec<usize> = (0..bundles.len()).filter(|&at| fed[at] && sources[at] == Source::Mean).collect();
     let mixed = mixed_shares(bundles, &sources, &mixers, contacts);
     let share_of = |at: usize| match origin(&sources, at) {
-        Origin::Contact(contact) => vec![(contact, Rational::ONE)],
+        Origin::Contact(contact) => vec![(contact, S::one())],
         Origin::Mixer(mixer) => mixed[&mixer].clone(),
     };
     (0..bundles.len()).map(|at| fed[at].then(|| share_of(at))).collect()
@@ -54,7 +67,7 @@ fn shares(channels: &Channels) -> Vec<Option<Share>> {
 
 /// Whether anything that left a contact reaches the bundle. Current is conserved, so what no contact feeds also feeds
 /// none: closed loops are left out of the system and cannot make it singular.
-fn fed_by_contacts(bundles: &[Bundle]) -> Vec<bool> {
+fn fed_by_contacts<S>(bundles: &[Bundle<S>]) -> Vec<bool> {
     let mut reached: BTreeSet<usize> = BTreeSet::new();
     let mut feeds_into = vec![Vec::new(); bundles.len()];
     for (at, bundle) in bundles.iter().enumerate() {
@@ -80,7 +93,7 @@ enum Source {
     Mean,
 }
 
-fn source(bundles: &[Bundle], at: BundleIdx) -> Source {
+fn source<S>(bundles: &[Bundle<S>], at: BundleIdx) -> Source {
     let feeds = &bundles[at.0].feeds;
     match feeds.first() {
         Some((first, _)) if feeds.iter().all(|(feed, _)| feed == first) => match first {
@@ -109,22 +122,25 @@ fn origin(sources: &[Source], mut at: usize) -> Origin {
 }
 
 /// Solves W μ = Σ w μ_feed for the bundles that are means of several feeds.
-fn mixed_shares(bundles: &[Bundle], sources: &[Source], mixers: &[usize], contacts: usize) -> BTreeMap<usize, Share> {
+fn mixed_shares<S: Scalar>(
+    bundles: &[Bundle<S>],
+    sources: &[Source],
+    mixers: &[usize],
+    contacts: usize,
+) -> BTreeMap<usize, Share<S>> {
     let place: BTreeMap<usize, usize> = mixers.iter().enumerate().map(|(row, &at)| (at, row)).collect();
-    let mut a = Matrix::zero(mixers.len(), mixers.len());
-    let mut b = Matrix::zero(mixers.len(), contacts);
+    let mut balance = Balance::new(mixers.len());
     for (row, &at) in mixers.iter().enumerate() {
         for (feed, weight) in &bundles[at].feeds {
-            a[(row, row)] += weight;
             match feed_origin(sources, feed) {
-                Origin::Contact(contact) => b[(row, contact)] += weight,
-                Origin::Mixer(mixer) => a[(row, place[&mixer])] -= weight,
+                Origin::Contact(contact) => balance.give(row, contact, weight),
+                Origin::Mixer(mixer) => balance.join(row, place[&mixer], weight),
             }
         }
     }
-    // Every mixer is fed by a contact in the end, so the matrix is an irreducibly dominant one and has an inverse.
-    let solved = solve(a, b).unwrap_or_else(|_| Matrix::zero(mixers.len(), contacts));
-    mixers.iter().enumerate().map(|(row, &at)| (at, sparse(solved.row(row)))).collect()
+    // Every mixer is fed by a contact in the end, so none hangs free.
+    let solved = balance.solve(contacts).unwrap_or_default();
+    mixers.iter().copied().zip(solved.into_iter().map(sparse)).collect()
 }
 
 fn feed_origin(sources: &[Source], feed: &Feed) -> Origin {
@@ -134,6 +150,6 @@ fn feed_origin(sources: &[Source], feed: &Feed) -> Origin {
     }
 }
 
-fn sparse(row: &[Rational]) -> Share {
-    row.iter().enumerate().filter(|(_, share)| !share.is_zero()).map(|(at, share)| (at, share.clone())).collect()
+fn sparse<S: Scalar>(row: Vec<S>) -> Share<S> {
+    row.into_iter().enumerate().filter(|(_, share)| !share.is_zero()).collect()
 }

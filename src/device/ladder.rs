@@ -62,6 +62,11 @@ impl Ladder {
         }
     }
 
+    /// |ν| of all steps with the sign of `sign_of`, outermost channel first.
+    pub fn steps(&self, sign_of: &Rational) -> impl Iterator<Item = Rational> {
+        std::iter::successors(self.step_above(&Rational::ZERO, sign_of), |from| self.step_above(from, sign_of))
+    }
+
     /// How many steps of the filling's sign are needed to hold it: its channels, counted in ladder steps.
     pub fn steps_up_to(&self, filling: &Rational) -> usize {
         let mut count = 0;

@@ -189,6 +189,15 @@ pub enum Mixing {
     None,
     /// All take the mean weighted by conductance (ℓ = 0).
     Full,
+    /// Departures from that mean decay as exp(−L/ℓ) with this ℓ.
+    Over(Nanometres),
+}
+
+impl Mixing {
+    /// Whether the length of a piece enters.
+    pub fn has_length(&self) -> bool {
+        matches!(self, Self::Over(_))
+    }
 }
 
 /// `[edge]`: mixing along rims, borders of one sign and borders between opposite signs.

@@ -30,24 +30,46 @@ pub(super) fn level(filling: &Rational, carrier: Carrier) -> Rational {
 
 fn carrier_bands(operating: &Operating, carrier: Carrier) -> Vec<Band> {
     let enclosing = enclosing_steps(operating, carrier);
+    let cuts = cuts(operating, carrier);
     let mut steps = BTreeMap::new();
     let mut below = Rational::ZERO;
     let mut bands = Vec::new();
-    for (rank, to) in thresholds(operating, carrier, &enclosing).into_iter().enumerate() {
+    for (rank, to) in thresholds(operating, carrier, &enclosing, &cuts).into_iter().enumerate() {
         let key = step_bottom(&enclosing, &below, &to);
         let next_step = steps.len();
         let step = *steps.entry(key).or_insert(next_step);
-        bands.push(Band { carrier, from: below, to: to.clone(), rank, step });
+        // Beyond the last cut all ladder steps are alike.
+        let ladder_step = cuts.iter().filter(|cut| **cut < to).count();
+        bands.push(Band { carrier, from: below, to: to.clone(), rank, step, ladder_step });
         below = to;
     }
     bands
 }
 
-/// Values of |ν| at which a band ends: those that occur and those that enclose a partial one, none beyond the highest.
-fn thresholds(operating: &Operating, carrier: Carrier, enclosing: &[(Rational, Rational)]) -> BTreeSet<Rational> {
+/// Ends of the ladder steps that some contact or group tells apart, outermost first.
+fn cuts(operating: &Operating, carrier: Carrier) -> Vec<Rational> {
+    let unequal = |shares: &&Vec<Rational>| shares.windows(2).any(|pair| pair[0] != pair[1]);
+    let listed = operating.transmission.iter().filter(unequal).map(|shares| shares.len() - 1).max();
+    let grouped = operating.groups.iter().flatten().copied().max();
+    let sign = match carrier {
+        Carrier::Electron => Rational::ONE,
+        Carrier::Hole => -Rational::ONE,
+    };
+    operating.ladder.steps(&sign).take(listed.max(grouped).unwrap_or(0)).collect()
+}
+
+/// Values of |ν| at which a band ends: those that occur, those that enclose a partial one and those that end a ladder
+/// step that is not like the next, none beyond the highest.
+fn thresholds(
+    operating: &Operating,
+    carrier: Carrier,
+    enclosing: &[(Rational, Rational)],
+    cuts: &[Rational],
+) -> BTreeSet<Rational> {
     let mut ends: BTreeSet<Rational> = operating.fillings.iter().map(|filling| level(filling, carrier)).collect();
     let highest = ends.last().cloned().unwrap_or_default();
     ends.extend(enclosing.iter().flat_map(|(lower, upper)| [lower.clone(), upper.clone()]));
+    ends.extend(cuts.iter().cloned());
     ends.into_iter().filter(|end| !end.is_zero() && *end <= highest).collect()
 }
 

@@ -12,8 +12,10 @@ use crate::layout::Layout;
 use crate::layout::Piece;
 use crate::layout::PieceIdx;
 use crate::layout::Topology;
+use crate::network::Arithmetic;
 use crate::network::BandIdx;
 use crate::network::Channels;
+use crate::network::Coupling;
 use crate::network::Network;
 use crate::network::Operating;
 use crate::network::bands::bands;
@@ -35,15 +37,18 @@ pub fn operating(network: &Network, device: &Device, point: &OperatingPoint, pol
     let fillings: Vec<Rational> = faces.iter().map(|label| filling(label, point)).collect();
     Operating {
         enclosing: fillings.iter().map(|filling| enclosing(&device.ladder, filling)).collect(),
-        mixing: network
+        ladder: device.ladder.clone(),
+        coupling: network
             .topology
             .pieces
             .iter()
-            .map(|piece| mixing(piece, network, device, (point, &fillings)))
+            .map(|piece| coupling(piece, network, device, (point, &fillings)))
             .collect(),
+        groups: Vec::new(),
         transmission: device.contacts.iter().map(|contact| contact.transmission.clone()).collect(),
         fillings,
         polarity,
+        arithmetic: Arithmetic::Exact,
     }
 }
 
@@ -54,7 +59,7 @@ pub fn channels(network: &Network, operating: &Operating) -> Channels {
     for (at, band) in bands.iter().enumerate() {
         append_paths(&mut paths, &network.topology, operating, (BandIdx(at), band));
     }
-    assemble(bands, paths, operating)
+    assemble(bands, paths, (network, operating))
 }
 
 fn filling(label: &FaceLabel, point: &OperatingPoint) -> Rational {
@@ -71,12 +76,12 @@ fn enclosing(ladder: &Ladder, filling: &Rational) -> Option<(Rational, Rational)
     }
 }
 
-fn mixing(
+fn coupling(
     piece: &Piece,
     network: &Network,
     device: &Device,
     (point, fillings): (&OperatingPoint, &[Rational]),
-) -> Mixing {
+) -> Coupling {
     let EdgeRules { rim, interface, opposite } = &point.edge;
     let (left, right) = (&fillings[piece.left.0], &fillings[piece.right.0]);
     let own = own_mixing(piece, &network.topology, device);
@@ -86,7 +91,7 @@ fn mixing(
         Border::Inner => own.unwrap_or(interface),
         Border::Contact => &Mixing::None,
     };
-    rule.clone()
+    Coupling::Alike(rule.clone())
 }
 
 enum Border {

@@ -3,8 +3,7 @@
 use std::collections::BTreeMap;
 
 use crate::device::ContactIdx;
-use crate::device::Mixing;
-use crate::layout::PieceIdx;
+use crate::network::Arithmetic;
 use crate::network::Band;
 use crate::network::Bundle;
 use crate::network::BundleIdx;
@@ -12,88 +11,108 @@ use crate::network::Channels;
 use crate::network::Course;
 use crate::network::CourseStep;
 use crate::network::Feed;
+use crate::network::Junctions;
+use crate::network::Network;
 use crate::network::Operating;
 use crate::network::Terminal;
+use crate::network::Wired;
 use crate::network::courses::Path;
+use crate::network::mixing::Blends;
+use crate::network::mixing::key;
+use crate::number::Number;
 use crate::number::Rational;
 
 /// Puts every step of every path into its bundle and joins the bundles by what flows between them.
-pub(super) fn assemble(bands: Vec<Band>, paths: Vec<Path>, operating: &Operating) -> Channels {
+pub(super) fn assemble(bands: Vec<Band>, paths: Vec<Path>, (network, operating): (&Network, &Operating)) -> Channels {
     let mut index = BTreeMap::new();
     let mut courses = Vec::with_capacity(paths.len());
     for path in &paths {
-        let step = bands[path.band.0].step;
+        let band = &bands[path.band.0];
         let steps = path.walks.iter().map(|&(piece, forward)| {
             let next = BundleIdx(index.len());
-            let bundle = *index.entry((piece, group(operating, piece, step))).or_insert(next);
-            CourseStep { piece, forward, bundle }
+            let bundle = *index.entry((piece, key(operating, piece, band))).or_insert(next);
+            CourseStep { piece, forward, bundle, leaving: bundle }
         });
         courses.push(Course { band: path.band, ends: path.ends, steps: steps.collect() });
     }
-    let empty = Bundle { weight: Rational::ZERO, feeds: Vec::new() };
-    let mut channels = Channels {
-        bundles: vec![empty; index.len()],
+    let blends = Blends::along(&bands, &mut courses, (network, operating));
+    let none = || Bundle { weight: Rational::ZERO, feeds: Vec::new() };
+    let mut wires = Wired {
+        bundles: (0..index.len()).map(|_| none()).collect(),
         terminals: vec![Terminal::default(); operating.transmission.len()],
-        bands,
-        courses,
     };
     for (course, path) in paths.iter().enumerate() {
-        feed_course(&mut channels, course, path.previous, operating);
+        feed_course(&mut wires, (&courses, &bands), (course, path.previous), operating);
     }
-    channels
+    wires.bundles.extend(blends.bundles);
+    Channels { bands, courses, junctions: junctions(wires, operating.arithmetic) }
 }
 
-/// Channels of one ladder step always share one potential; with full mixing all channels of the piece do.
-fn group(operating: &Operating, piece: PieceIdx, step: usize) -> Option<usize> {
-    match operating.mixing[piece.0] {
-        Mixing::None => Some(step),
-        Mixing::Full => None,
+/// In fractions, where all feeds are some and nothing else is asked for.
+fn junctions(wires: Wired<Number>, arithmetic: Arithmetic) -> Junctions {
+    let mut feeds = wires.bundles.iter().flat_map(|bundle| &bundle.feeds);
+    if arithmetic == Arithmetic::Float || feeds.any(|(_, weight)| weight.exact().is_none()) {
+        return Junctions::Float(converted(wires, |weight| weight.to_f64()));
     }
+    Junctions::Exact(converted(wires, |weight| weight.exact().cloned().unwrap_or_default()))
 }
 
-fn feed_course(channels: &mut Channels, course: usize, previous: usize, operating: &Operating) {
-    let Course { band, ends, ref steps } = channels.courses[course];
-    let weight = &channels.bands[band.0].to - &channels.bands[band.0].from;
-    let bundles: Vec<BundleIdx> = steps.iter().map(|step| step.bundle).collect();
-    for pair in bundles.windows(2) {
-        add_feed(channels, pair[1], Feed::Bundle(pair[0]), &weight);
+fn converted<S>(wires: Wired<Number>, number: impl Fn(&Number) -> S) -> Wired<S> {
+    let bundle = |Bundle { weight, feeds }: Bundle<Number>| {
+        let feeds = feeds.iter().map(|(feed, weight)| (*feed, number(weight))).collect();
+        Bundle { weight, feeds }
+    };
+    Wired { bundles: wires.bundles.into_iter().map(bundle).collect(), terminals: wires.terminals }
+}
+
+fn feed_course(
+    wires: &mut Wired<Number>,
+    (courses, bands): (&[Course], &[Band]),
+    (course, previous): (usize, usize),
+    operating: &Operating,
+) {
+    let Course { band, ends, ref steps } = courses[course];
+    let band = &bands[band.0];
+    let weight = &band.to - &band.from;
+    for pair in steps.windows(2) {
+        add_feed(wires, pair[1].bundle, Feed::Bundle(pair[0].leaving), weight.clone());
     }
-    let (Some(&first), Some(&last)) = (bundles.first(), bundles.last()) else { return };
+    let (Some(first), Some(last)) = (steps.first(), steps.last()) else { return };
     match ends {
-        None => add_feed(channels, first, Feed::Bundle(last), &weight),
+        None => add_feed(wires, first.bundle, Feed::Bundle(last.leaving), weight),
         Some(ends) => {
-            let passing = channels.courses[previous].steps.last().map(|step| step.bundle);
-            emit(channels, ends.from, (first, passing), &weight, operating);
-            let absorbed = &weight * &transmission(operating, ends.to);
-            channels.terminals[ends.to.0].absorbed.push((last, absorbed));
+            let emitted = &weight * &transmission(operating, ends.from, band);
+            let passing = courses[previous].steps.last().map(|step| step.leaving);
+            emit(wires, (ends.from, first.bundle), passing, (weight.clone(), emitted));
+            let absorbed = &weight * &transmission(operating, ends.to, band);
+            wires.terminals[ends.to.0].absorbed.push((last.leaving, absorbed));
         }
     }
 }
 
 /// A channel leaves a contact with t V + (1 − t) (what arrived at the same level).
 fn emit(
-    channels: &mut Channels,
-    contact: ContactIdx,
-    (into, passing): (BundleIdx, Option<BundleIdx>),
-    weight: &Rational,
-    operating: &Operating,
+    wires: &mut Wired<Number>,
+    (contact, into): (ContactIdx, BundleIdx),
+    passing: Option<BundleIdx>,
+    (weight, emitted): (Rational, Rational),
 ) {
-    let emitted = weight * &transmission(operating, contact);
     if let Some(passing) = passing {
-        add_feed(channels, into, Feed::Bundle(passing), &(weight - &emitted));
+        add_feed(wires, into, Feed::Bundle(passing), &weight - &emitted);
     }
-    add_feed(channels, into, Feed::Contact(contact), &emitted);
-    channels.terminals[contact.0].emitted += &emitted;
+    add_feed(wires, into, Feed::Contact(contact), emitted);
 }
 
-fn transmission(operating: &Operating, contact: ContactIdx) -> Rational {
-    operating.transmission[contact.0].first().cloned().unwrap_or(Rational::ONE)
+/// The share of a contact at the band's ladder step; a shorter list repeats its last value.
+fn transmission(operating: &Operating, contact: ContactIdx, band: &Band) -> Rational {
+    let shares = &operating.transmission[contact.0];
+    shares.get(band.ladder_step).or(shares.last()).cloned().unwrap_or(Rational::ONE)
 }
 
-fn add_feed(channels: &mut Channels, into: BundleIdx, from: Feed, weight: &Rational) {
-    let bundle = &mut channels.bundles[into.0];
-    bundle.weight += weight;
+fn add_feed(wires: &mut Wired<Number>, into: BundleIdx, from: Feed, weight: Rational) {
+    let bundle = &mut wires.bundles[into.0];
+    bundle.weight += &weight;
     if !weight.is_zero() {
-        bundle.feeds.push((from, weight.clone()));
+        bundle.feeds.push((from, weight.into()));
     }
 }

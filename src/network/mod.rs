@@ -5,6 +5,7 @@
 //! units: pieces are ids and lengths.
 
 use crate::device::ContactIdx;
+use crate::device::Ladder;
 use crate::device::Mixing;
 pub use crate::layout::FaceIdx;
 pub use crate::layout::FaceLabel;
@@ -12,6 +13,7 @@ use crate::layout::PieceIdx;
 use crate::layout::Topology;
 use crate::layout::VertexIdx;
 use crate::number::Rational;
+use crate::quantity::Nanometres;
 use crate::quantity::Polarity;
 
 mod bands;
@@ -19,6 +21,7 @@ mod boundary;
 mod build;
 mod bundles;
 mod courses;
+mod mixing;
 mod rim;
 
 pub use build::channels;
@@ -44,12 +47,64 @@ pub struct Operating {
     pub fillings: Vec<Rational>,
     /// Steps of the ladder that enclose partial fillings: (lower, upper) of |ν|, per face; none where ν is a step.
     pub enclosing: Vec<Option<(Rational, Rational)>>,
-    /// Mixing along every piece.
-    pub mixing: Vec<Mixing>,
+    /// Which filling each ladder step ends at.
+    pub ladder: Ladder,
+    /// What channels do to one another along every piece.
+    pub coupling: Vec<Coupling>,
+    /// Ladder steps that mix with one another, counted from 1 at the outermost; a step in none is its own.
+    pub groups: Vec<Vec<usize>>,
     /// Transmission of every contact, outermost ladder step first (the last value repeats).
     pub transmission: Vec<Vec<Rational>>,
     /// Polarity of the field.
     pub polarity: Polarity,
+    /// In which numbers to solve.
+    pub arithmetic: Arithmetic,
+}
+
+/// What channels that run along one piece do to one another.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Coupling {
+    /// All mix alike.
+    Alike(Mixing),
+    /// Ladder steps of one group mix, and more slowly the groups.
+    Grouped {
+        /// Within a group.
+        within: Mixing,
+        /// Between groups.
+        between: Mixing,
+    },
+    /// A forward and a backward mode turn into one another: the length λ over which a stretch adds h/e² to itself.
+    Backscatter(Nanometres),
+}
+
+impl Coupling {
+    /// Whether the length of the piece enters.
+    pub fn has_length(&self) -> bool {
+        match self {
+            Self::Alike(mixing) => mixing.has_length(),
+            Self::Grouped { within, between } => within.has_length() || between.has_length(),
+            Self::Backscatter(_) => true,
+        }
+    }
+
+    /// The same with another rule wherever a length enters.
+    pub fn without_length(&self, rule: &Mixing) -> Self {
+        let replaced = |mixing: &Mixing| if mixing.has_length() { rule.clone() } else { mixing.clone() };
+        match self {
+            Self::Alike(mixing) => Self::Alike(replaced(mixing)),
+            Self::Grouped { within, between } => Self::Grouped { within: replaced(within), between: replaced(between) },
+            Self::Backscatter(_) => Self::Alike(rule.clone()),
+        }
+    }
+}
+
+/// In which numbers a setting is solved.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Arithmetic {
+    /// In fractions wherever no length enters.
+    Exact,
+    /// In floats: quicker where many settings are tried.
+    Float,
 }
 
 /// Index of a level band.
@@ -82,6 +137,8 @@ pub struct Band {
     pub rank: usize,
     /// Bands of one ladder step share this number; they always share one potential.
     pub step: usize,
+    /// The ladder step that it belongs to, or the first of several: 0 is the outermost of its carrier.
+    pub ladder_step: usize,
 }
 
 /// One stretch of a channel: from the contact that emits it to the contact that absorbs it, or a closed loop.
@@ -118,10 +175,12 @@ pub struct CourseStep {
     pub forward: bool,
     /// Channels of one bundle share one potential.
     pub bundle: BundleIdx,
+    /// The bundle in which it leaves the piece: another one where potentials change along it.
+    pub leaving: BundleIdx,
 }
 
 /// Where a share of a bundle's potential comes from.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Feed {
     /// A contact's own potential.
     Contact(ContactIdx),
@@ -131,20 +190,36 @@ pub enum Feed {
 
 /// A set of channels side by side with one potential: the weighted mean of its feeds.
 #[derive(Clone, Debug, PartialEq)]
-pub struct Bundle {
+pub struct Bundle<S> {
     /// Conductance in e²/h.
     pub weight: Rational,
     /// Feeds with their conductance; the conductances sum to `weight`. Empty: a loop that no contact feeds.
-    pub feeds: Vec<(Feed, Rational)>,
+    pub feeds: Vec<(Feed, S)>,
 }
 
 /// What a contact emits and absorbs.
 #[derive(Clone, Debug, Default, PartialEq)]
 pub struct Terminal {
-    /// Conductance emitted at the contact's own potential (Σ weight × transmission).
-    pub emitted: Rational,
-    /// Absorbed from bundles: (bundle, weight × transmission).
+    /// Absorbed from bundles: (bundle, weight × transmission). As much is emitted at the contact's own potential.
     pub absorbed: Vec<(BundleIdx, Rational)>,
+}
+
+/// Bundles and contacts, joined by what flows between them, in one kind of number.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Wired<S> {
+    /// Bundles.
+    pub bundles: Vec<Bundle<S>>,
+    /// One per contact.
+    pub terminals: Vec<Terminal>,
+}
+
+/// What flows where: in fractions, unless something enters that is none.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Junctions {
+    /// In fractions.
+    Exact(Wired<Rational>),
+    /// In floats.
+    Float(Wired<f64>),
 }
 
 /// All channels of one setting at one polarity.
@@ -154,8 +229,16 @@ pub struct Channels {
     pub bands: Vec<Band>,
     /// Courses, band by band.
     pub courses: Vec<Course>,
-    /// Bundles.
-    pub bundles: Vec<Bundle>,
-    /// One per contact.
-    pub terminals: Vec<Terminal>,
+    /// Bundles and contacts.
+    pub junctions: Junctions,
+}
+
+impl Channels {
+    /// Bundles and contacts in fractions, where they are.
+    pub fn exact(&self) -> Option<&Wired<Rational>> {
+        match &self.junctions {
+            Junctions::Exact(wired) => Some(wired),
+            Junctions::Float(_) => None,
+        }
+    }
 }

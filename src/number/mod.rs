@@ -1,14 +1,17 @@
 //! Exact and floating numbers, and elimination over either.
 //!
-//! Owns: [`Rational`], the small trait [`Scalar`], dense matrices and elimination. Takes numbers, gives numbers.
-//! Must never contain units or text for users.
+//! Owns: [`Rational`], [`Number`], the small trait [`Scalar`], dense matrices and the elimination of a [`Balance`]. Takes
+//! numbers, gives numbers. Must never contain units or text for users.
 
-mod elimination;
+mod balance;
+mod either;
+mod matrix;
 mod rational;
 mod scalar;
 
-pub use elimination::Matrix;
-pub use elimination::Singular;
-pub use elimination::solve;
+pub use balance::Balance;
+pub use balance::Singular;
+pub use either::Number;
+pub use matrix::Matrix;
 pub use rational::Rational;
 pub use scalar::Scalar;

@@ -6,6 +6,7 @@ use std::ops::Mul;
 use std::ops::Neg;
 use std::ops::Sub;
 
+use crate::number::Number;
 use crate::number::Rational;
 
 /// A field in which elimination can be done: exact rationals or floats.
@@ -17,14 +18,30 @@ pub trait Scalar:
     + Div<Output = Self>
     + Neg<Output = Self>
     + PartialEq
+    + Into<Number>
 {
     /// Zero.
     fn zero() -> Self;
     /// One.
     fn one() -> Self;
-    /// Worth as a pivot: larger is better, 0 means unusable. Exact numbers prefer short ones.
-    fn pivot_worth(&self) -> f64;
+    /// The nearest number of this kind.
+    fn nearest(exact: &Rational) -> Self;
+    /// `self − other`; zero where floats agree in all digits that they can have after a few operations.
+    fn less(&self, other: &Self) -> Self;
+    /// Whether it is zero.
+    fn is_zero(&self) -> bool {
+        *self == Self::zero()
+    }
+    /// Adds a number in place.
+    fn increase(&mut self, other: &Self) {
+        if !other.is_zero() {
+            *self = self.clone() + other.clone();
+        }
+    }
 }
+
+/// Relative difference below which two floats are one number: some hundred units in the last place.
+const SAME_FLOAT: f64 = 1e-13;
 
 impl Scalar for f64 {
     fn zero() -> Self {
@@ -33,8 +50,12 @@ impl Scalar for f64 {
     fn one() -> Self {
         1.0
     }
-    fn pivot_worth(&self) -> f64 {
-        self.abs()
+    fn nearest(exact: &Rational) -> Self {
+        exact.to_f64()
+    }
+    fn less(&self, other: &Self) -> Self {
+        let difference = self - other;
+        if difference.abs() <= SAME_FLOAT * self.abs().max(other.abs()) { 0.0 } else { difference }
     }
 }
 
@@ -45,8 +66,16 @@ impl Scalar for Rational {
     fn one() -> Self {
         Rational::ONE
     }
-    /// Any non-zero pivot is exact; the first one found keeps the order of the input.
-    fn pivot_worth(&self) -> f64 {
-        f64::from(u8::from(!self.is_zero()))
+    fn nearest(exact: &Rational) -> Self {
+        exact.clone()
+    }
+    fn less(&self, other: &Self) -> Self {
+        self - other
+    }
+    fn is_zero(&self) -> bool {
+        self.is_zero()
+    }
+    fn increase(&mut self, other: &Self) {
+        *self += other;
     }
 }

@@ -9,6 +9,7 @@
 //! A number without uncertainty has a given count of decimals or digits. Rounding is half to even of the digits that the
 //! float shows, the minus is U+2212, zero has no sign, and very large or small numbers carry a power of ten.
 
+use crate::number::Number;
 use crate::number::Rational;
 use crate::quantity::Uncertain;
 use crate::quantity::decimal::Decimal;
@@ -83,6 +84,14 @@ pub fn significant(value: f64, count: usize) -> String {
 /// An exact resistance in h/e², or any exact number: `1/2`, `−2/3`, `0`.
 pub fn fraction(exact: &Rational) -> String {
     exact.to_string().replace('-', "−")
+}
+
+/// A share of the source voltage: `1/3`, or two decimals of a float.
+pub fn share(share: &Number) -> String {
+    match share {
+        Number::Exact(exact) => fraction(exact),
+        Number::Float(value) => decimals(*value, 2),
+    }
 }
 
 /// A resistance in h/e² with five decimals, for table columns: `0.66667`.

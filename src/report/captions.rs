@@ -9,8 +9,10 @@ use crate::diagnostic::Diagnostic;
 use crate::figure::scene::Mark;
 use crate::figure::scene::Role;
 use crate::figure::scene::Scene;
+use crate::number::Number;
 use crate::number::Rational;
 use crate::quantity::Polarity;
+use crate::quantity::printed;
 use crate::report::DrawingWords;
 use crate::report::PointSource;
 use crate::report::Printed;
@@ -208,11 +210,12 @@ fn largest<'a>(point: &PointSource, prediction: &'a Prediction) -> Option<&'a Ex
 /// Distinct potentials strictly between outlet and inlet, highest first.
 fn shares(point: &PointSource, prediction: &Prediction) -> Vec<String> {
     let potentials = prediction.bundle_potentials(point.drawn_current).unwrap_or_default();
-    let mut between: Vec<Rational> = potentials.into_iter().flatten().collect();
-    between.retain(|share| *share > Rational::ZERO && *share < Rational::ONE);
-    between.sort_by(|a, b| b.cmp(a));
-    between.dedup();
-    between.iter().map(|share| Printed::exact(share).text).collect()
+    let mut between: Vec<Number> = potentials.into_iter().flatten().collect();
+    between.retain(|share| share.to_f64() > 0.0 && share.to_f64() < 1.0);
+    between.sort_by(|a, b| b.to_f64().total_cmp(&a.to_f64()));
+    let mut texts: Vec<String> = between.iter().map(printed::share).collect();
+    texts.dedup();
+    texts
 }
 
 /// A reading with four distinct contacts whose two polarities differ in sign only.

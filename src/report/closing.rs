@@ -123,5 +123,6 @@ fn mixing_word(mixing: &Mixing) -> String {
     match mixing {
         Mixing::None => "none".to_string(),
         Mixing::Full => "full".to_string(),
+        Mixing::Over(length) => format!("over ℓ = {} µm", printed::as_given(length.to_um())),
     }
 }

@@ -62,14 +62,15 @@ pub fn expected_output<'a>(device: &'a Device, solved: &'a [SolvedPoint<'a>]) ->
 }
 
 fn point_output<'a>(device: &'a Device, solved: &'a SolvedPoint<'a>) -> PointOutput<'a> {
-    let matrix = &solved.prediction.conductance.matrix;
-    let row = |row: usize| matrix.row(row).iter().map(ToString::to_string).collect();
+    let conductance = &solved.prediction.conductance;
+    let contacts = conductance.contacts();
+    let row = |row: usize| (0..contacts).map(|column| conductance.entry(row, column).to_string()).collect();
     let readings = solved.prediction.expected.iter().zip(&solved.names);
     PointOutput {
         name: &solved.point.name,
         polarity: solved.polarity.sign(),
         contacts: device.contacts.iter().map(|contact| contact.name.as_str()).collect(),
-        conductance: (0..matrix.rows()).map(row).collect(),
+        conductance: (0..contacts).map(row).collect(),
         readings: readings.map(|(expected, name)| reading_output(device, expected, name.as_deref())).collect(),
     }
 }
@@ -81,7 +82,7 @@ fn reading_output<'a>(device: &'a Device, expected: &'a Expected, name: Option<&
         current: names(expected.reading.current),
         voltage: names(expected.reading.voltage),
         exact: expected.exact.as_ref().map(ToString::to_string),
-        h_per_e2: expected.exact.as_ref().map(|exact| exact.to_f64()),
+        h_per_e2: expected.h_per_e2,
         ohm: expected.ohm,
         shown_ohm: expected.shown_ohm,
         shown_quadrature_ohm: expected.shown_quadrature_ohm,

@@ -1,33 +1,32 @@
 //! Islands: contacts that the device joins, each island solved once.
 
-use crate::conductance::Conductance;
+use crate::conductance::Solved;
 use crate::device::ContactIdx;
+use crate::number::Balance;
 use crate::number::Matrix;
-use crate::number::Rational;
 use crate::number::Scalar;
-use crate::number::solve;
 
 /// The device cut into islands. Contacts with a conductance between them form one.
-pub(super) struct Islands {
+pub(super) struct Islands<S> {
     /// For every contact its island and its place in it.
     place: Vec<(usize, usize)>,
     /// Per island: potential (row) per unit current in at a contact (column) and out at the last; the last has 0.
-    potential: Vec<Matrix<Rational>>,
+    potential: Vec<Vec<Vec<S>>>,
     passes: Vec<bool>,
 }
 
-impl Islands {
+impl<S: Scalar> Islands<S> {
     /// Cuts and solves.
-    pub fn of(conductance: &Conductance) -> Self {
-        let members = members(conductance);
-        let mut place = vec![(0, 0); conductance.contacts];
+    pub fn of(solved: &Solved<S>) -> Self {
+        let members = members(&solved.matrix);
+        let mut place = vec![(0, 0); solved.contacts()];
         for (island, contacts) in members.iter().enumerate() {
             for (at, &contact) in contacts.iter().enumerate() {
                 place[contact] = (island, at);
             }
         }
-        let passes = (0..conductance.contacts).map(|at| !conductance.matrix[(at, at)].is_zero()).collect();
-        let potential = members.iter().map(|contacts| unit_potentials(&conductance.matrix, contacts)).collect();
+        let passes = (0..solved.contacts()).map(|at| !solved.matrix[(at, at)].is_zero()).collect();
+        let potential = members.iter().map(|contacts| unit_potentials(&solved.matrix, contacts)).collect();
         Self { place, potential, passes }
     }
 
@@ -47,18 +46,18 @@ impl Islands {
     }
 
     /// R_ij,kl in h/e²; none when the four contacts do not lie on one island.
-    pub fn resistance(&self, current: [ContactIdx; 2], voltage: [ContactIdx; 2]) -> Option<Rational> {
+    pub fn resistance(&self, current: [ContactIdx; 2], voltage: [ContactIdx; 2]) -> Option<S> {
         let [inlet, outlet, plus, minus] = [current[0], current[1], voltage[0], voltage[1]].map(|at| self.place[at.0]);
         let one_island = [outlet, plus, minus].into_iter().all(|place| place.0 == inlet.0);
         let potential = &self.potential[inlet.0];
-        let difference = |column: usize| &potential[(plus.1, column)] - &potential[(minus.1, column)];
-        one_island.then(|| difference(inlet.1) - difference(outlet.1))
+        let at = |contact: (usize, usize)| potential[contact.1][inlet.1].less(&potential[contact.1][outlet.1]);
+        one_island.then(|| at(plus).less(&at(minus)))
     }
 }
 
-fn members(conductance: &Conductance) -> Vec<Vec<usize>> {
-    let joined = |a: usize, b: usize| !conductance.matrix[(a, b)].is_zero() || !conductance.matrix[(b, a)].is_zero();
-    let mut left: Vec<usize> = (0..conductance.contacts).collect();
+fn members<S: Scalar>(matrix: &Matrix<S>) -> Vec<Vec<usize>> {
+    let joined = |a: usize, b: usize| !matrix[(a, b)].is_zero() || !matrix[(b, a)].is_zero();
+    let mut left: Vec<usize> = (0..matrix.rows()).collect();
     let mut islands = Vec::new();
     while !left.is_empty() {
         let mut island = vec![left.remove(0)];
@@ -75,38 +74,33 @@ fn members(conductance: &Conductance) -> Vec<Vec<usize>> {
     islands
 }
 
-/// Inverse of the island's conductance matrix with its last contact as ground, a row and column of zeros for the ground.
-fn unit_potentials(matrix: &Matrix<Rational>, contacts: &[usize]) -> Matrix<Rational> {
+/// V in G V = I for unit currents, with the last contact as ground: a row of potentials for every contact. Only what lies
+/// beside the diagonal is read, because rows sum to zero.
+fn unit_potentials<S: Scalar>(matrix: &Matrix<S>, contacts: &[usize]) -> Vec<Vec<S>> {
     let free = contacts.len() - 1;
-    let mut a = Matrix::zero(free, free);
-    let mut unit = Matrix::zero(free, free);
+    let mut balance = Balance::new(free);
     for row in 0..free {
-        unit[(row, row)] = Rational::one();
-        for column in 0..free {
-            a[(row, column)] = matrix[(contacts[row], contacts[column])].clone();
-        }
+        balance.sources[row].insert(row, S::one());
+        let joined = |column: usize| -matrix[(contacts[row], contacts[column])].clone();
+        balance.given[row] = joined(free);
+        (0..free).for_each(|column| balance.join(row, column, &joined(column)));
     }
-    let mut potential = Matrix::zero(free + 1, free + 1);
-    // On an island every current finds its way, so the reduced matrix has an inverse.
-    if let Ok(inverse) = solve(a, unit) {
-        for row in 0..free {
-            for column in 0..free {
-                potential[(row, column)] = inverse[(row, column)].clone();
-            }
-        }
-    }
+    // On an island every current finds its way, so no contact hangs free.
+    let mut potential = balance.solve(free + 1).unwrap_or_else(|_| vec![vec![S::zero(); free + 1]; free]);
+    potential.push(vec![S::zero(); free + 1]);
     potential
 }
 
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::number::Rational;
 
     /// Transmissions of a four-contact conductor, T_ij from j into i; every value below is the exact rational solution of
     /// M. Büttiker's equations, Phys. Rev. Lett. 57, 1761 (1986), computed independently.
     const TRANSMISSIONS: [[i64; 4]; 4] = [[0, 1, 0, 2], [2, 0, 1, 0], [1, 1, 0, 1], [0, 1, 2, 0]];
 
-    fn islands(transposed: bool) -> Islands {
+    fn islands(transposed: bool) -> Islands<Rational> {
         let mut matrix = Matrix::zero(4, 4);
         for row in 0..4 {
             for column in 0..4 {
@@ -116,10 +110,10 @@ mod tests {
             }
         }
         let matrix = if transposed { matrix.transposed() } else { matrix };
-        Islands::of(&Conductance { contacts: 4, matrix, shares: Vec::new() })
+        Islands::of(&Solved { matrix, shares: Vec::new() })
     }
 
-    fn seventeenths(islands: &Islands, [i, j, k, l]: [usize; 4]) -> String {
+    fn seventeenths(islands: &Islands<Rational>, [i, j, k, l]: [usize; 4]) -> String {
         let exact = islands.resistance([ContactIdx(i - 1), ContactIdx(j - 1)], [ContactIdx(k - 1), ContactIdx(l - 1)]);
         (exact.unwrap() * Rational::from(17)).to_string()
     }

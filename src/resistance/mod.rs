@@ -10,6 +10,7 @@ use crate::conductance::Conductance;
 use crate::device::ContactIdx;
 use crate::network::Channels;
 use crate::network::Operating;
+use crate::number::Number;
 use crate::number::Rational;
 
 mod closed_form;
@@ -87,8 +88,10 @@ pub struct Expected {
     pub reading: Reading,
     /// Its state; all numbers are none unless it is fine.
     pub state: ReadingState,
-    /// Resistance in h/e², exact.
+    /// Resistance in h/e², exact; none where it has no number or that is a float.
     pub exact: Option<Rational>,
+    /// The same as a float, which it has wherever it has a number.
+    pub h_per_e2: Option<f64>,
     /// The same in Ω.
     pub ohm: Option<f64>,
     /// What the meter shows, in Ω; `ohm` where there is no circuit, none where no current is there to divide by.
@@ -113,7 +116,7 @@ pub struct Prediction {
 impl Prediction {
     /// Potential of every bundle with current leads `current`, scaled so that the inlet is at 1 and the outlet at 0;
     /// none where nothing fixes it. None altogether when there is no path between them.
-    pub fn bundle_potentials(&self, current: [ContactIdx; 2]) -> Option<Vec<Option<Rational>>> {
+    pub fn bundle_potentials(&self, current: [ContactIdx; 2]) -> Option<Vec<Option<Number>>> {
         predict::bundle_potentials(&self.conductance, current)
     }
 
@@ -122,7 +125,7 @@ impl Prediction {
         let fine = |expected: &&mut Expected| expected.state == ReadingState::Fine;
         let readings: Vec<&Reading> =
             self.expected.iter().filter(|e| e.state == ReadingState::Fine).map(|e| &e.reading).collect();
-        let found = forms.forms(&readings, self.conductance.contacts);
+        let found = forms.forms(&readings, self.conductance.contacts());
         for (expected, form) in self.expected.iter_mut().filter(fine).zip(found) {
             expected.formula = form.map(|form| forms.words(&form));
         }

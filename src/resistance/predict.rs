@@ -7,11 +7,13 @@ use crate::circuit::Correction;
 use crate::circuit::budget;
 use crate::circuit::shown;
 use crate::conductance::Conductance;
+use crate::conductance::Solved;
 use crate::conductance::conductance;
 use crate::device::ContactIdx;
 use crate::network::Network;
 use crate::network::channels;
-use crate::number::Rational;
+use crate::number::Number;
+use crate::number::Scalar;
 use crate::quantity::KLITZING;
 use crate::resistance::Expected;
 use crate::resistance::Prediction;
@@ -28,8 +30,10 @@ use crate::resistance::takings;
 pub fn predict(network: &Network, setup: &Setup, readings: &[Reading]) -> Prediction {
     let channels = channels(network, &setup.operating);
     let conductance = conductance(&channels);
-    let islands = Islands::of(&conductance);
-    let mut expected: Vec<Expected> = readings.iter().map(|reading| expected(&islands, setup, reading)).collect();
+    let mut expected = match &conductance {
+        Conductance::Exact(solved) => all_expected(&Islands::of(solved), setup, readings),
+        Conductance::Float(solved) => all_expected(&Islands::of(solved), setup, readings),
+    };
     if let Some(circuit) = &setup.circuit {
         put_shown(&Chip::of(&conductance), circuit, &mut expected);
     }
@@ -37,28 +41,62 @@ pub fn predict(network: &Network, setup: &Setup, readings: &[Reading]) -> Predic
 }
 
 /// Potential of every bundle with the inlet at 1 and the outlet at 0.
-pub(super) fn bundle_potentials(conductance: &Conductance, current: [ContactIdx; 2]) -> Option<Vec<Option<Rational>>> {
-    let potentials = contact_potentials(&Islands::of(conductance), current)?;
-    let mean = |share: &Vec<(usize, Rational)>| {
-        share.iter().map(|(contact, part)| potentials[*contact].as_ref().map(|v| part * v)).sum::<Option<Rational>>()
-    };
-    Some(conductance.shares.iter().map(|share| share.as_ref().and_then(mean)).collect())
+pub(super) fn bundle_potentials(conductance: &Conductance, current: [ContactIdx; 2]) -> Option<Vec<Option<Number>>> {
+    match conductance {
+        Conductance::Exact(solved) => potentials(solved, current, Number::Exact),
+        Conductance::Float(solved) => potentials(solved, current, drawn),
+    }
 }
 
-fn contact_potentials(islands: &Islands, [inlet, outlet]: [ContactIdx; 2]) -> Option<Vec<Option<Rational>>> {
+/// Decimals of a potential that a drawing tells apart.
+const DRAWN: f64 = 1e9;
+
+/// What differs by rounding alone is one potential.
+fn drawn(potential: f64) -> Number {
+    Number::Float((potential * DRAWN).round() / DRAWN)
+}
+
+fn potentials<S: Scalar>(
+    solved: &Solved<S>,
+    current: [ContactIdx; 2],
+    number: impl Fn(S) -> Number,
+) -> Option<Vec<Option<Number>>> {
+    let of_contacts = contact_potentials(&Islands::of(solved), current)?;
+    let mean = |share: &Vec<(usize, S)>| {
+        let parts = share.iter().map(|(contact, part)| Some(part.clone() * of_contacts[*contact].clone()?));
+        parts.reduce(|sum, part| Some(sum? + part?)).flatten()
+    };
+    Some(solved.shares.iter().map(|share| share.as_ref().and_then(mean).map(&number)).collect())
+}
+
+fn contact_potentials<S: Scalar>(islands: &Islands<S>, [inlet, outlet]: [ContactIdx; 2]) -> Option<Vec<Option<S>>> {
     let whole = islands.resistance([inlet, outlet], [inlet, outlet])?;
-    let potential = |contact| islands.resistance([inlet, outlet], [contact, outlet]).map(|r| &r / &whole);
+    let potential = |contact| islands.resistance([inlet, outlet], [contact, outlet]).map(|r: S| r / whole.clone());
     Some((0..islands.contacts()).map(|contact| potential(ContactIdx(contact))).collect())
 }
 
-fn expected(islands: &Islands, setup: &Setup, reading: &Reading) -> Expected {
+fn all_expected<S: Scalar>(islands: &Islands<S>, setup: &Setup, readings: &[Reading]) -> Vec<Expected> {
+    readings.iter().map(|reading| expected(islands, setup, reading)).collect()
+}
+
+fn expected<S: Scalar>(islands: &Islands<S>, setup: &Setup, reading: &Reading) -> Expected {
     let state = state(islands, setup, reading);
-    let exact = match state {
-        ReadingState::Fine => islands.resistance(reading.current, reading.voltage),
+    let number: Option<Number> = match state {
+        ReadingState::Fine => islands.resistance(reading.current, reading.voltage).map(S::into),
         ReadingState::NoPath | ReadingState::Floating => None,
     };
-    let ohm = exact.as_ref().map(|exact| exact.to_f64() * KLITZING.value);
-    Expected { reading: reading.clone(), state, exact, ohm, shown_ohm: ohm, shown_quadrature_ohm: None, formula: None }
+    let h_per_e2 = number.as_ref().map(Number::to_f64);
+    let ohm = h_per_e2.map(|h_per_e2| h_per_e2 * KLITZING.value);
+    Expected {
+        reading: reading.clone(),
+        state,
+        exact: number.as_ref().and_then(Number::exact).cloned(),
+        h_per_e2,
+        ohm,
+        shown_ohm: ohm,
+        shown_quadrature_ohm: None,
+        formula: None,
+    }
 }
 
 /// The state of a reading is that of the device and its leads: no meter and no ground mends it.
@@ -104,7 +142,7 @@ pub(super) fn corrections(conductance: &Conductance, setup: &Setup, expected: &[
 }
 
 /// `no path` wins over `floating`; a contact that is open, or passes nothing, can carry no current and hold no voltage.
-fn state(islands: &Islands, setup: &Setup, reading: &Reading) -> ReadingState {
+fn state<S: Scalar>(islands: &Islands<S>, setup: &Setup, reading: &Reading) -> ReadingState {
     let usable = |contact: ContactIdx| !setup.is_open(contact) && islands.passes(contact);
     let [inlet, outlet] = reading.current;
     if !usable(inlet) || !usable(outlet) || !islands.together(inlet, outlet) {

@@ -7,6 +7,7 @@ use edgesheet::circuit::Drive;
 use edgesheet::circuit::Shown;
 use edgesheet::circuit::Taken;
 use edgesheet::conductance::Conductance;
+use edgesheet::conductance::Solved;
 use edgesheet::cooldown::Meter;
 use edgesheet::cooldown::MeterInput;
 use edgesheet::device::ContactIdx;
@@ -27,7 +28,7 @@ pub fn bar(filling: i64, polarity: Polarity) -> Conductance {
         matrix[(contact, contact)] = Rational::from(filling);
         matrix[(contact, feeding(contact))] = Rational::from(-filling);
     }
-    Conductance { contacts: 6, matrix, shares: Vec::new() }
+    Conductance::Exact(Solved { matrix, shares: Vec::new() })
 }
 
 /// A circuit with nothing in it.

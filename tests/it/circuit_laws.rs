@@ -13,6 +13,7 @@ use edgesheet::circuit::budget;
 use edgesheet::circuit::corrections;
 use edgesheet::circuit::shown;
 use edgesheet::conductance::Conductance;
+use edgesheet::conductance::Solved;
 use edgesheet::cooldown::ContactState;
 use edgesheet::cooldown::CurrentDivisor;
 use edgesheet::cooldown::MeterInput;
@@ -46,7 +47,7 @@ fn random_device(dice: &mut Dice, contacts: usize) -> Conductance {
             matrix[(to, from)] -= &weight;
         }
     }
-    Conductance { contacts, matrix, shares: Vec::new() }
+    Conductance::Exact(Solved { matrix, shares: Vec::new() })
 }
 
 fn one_of<T: Copy>(dice: &mut Dice, values: &[T]) -> T {
@@ -128,7 +129,7 @@ fn an_independent_solution_gives_the_same() {
 /// Potentials against the ground, per current into every rack node, with all meters and grounds in place.
 fn port_matrix(device: &Conductance, circuit: &Circuit, taken: &Taken) -> Vec<Vec<Complex<f64>>> {
     let ground = taken.current[1];
-    let ports: Vec<ContactIdx> = (0..device.contacts).map(ContactIdx).filter(|port| *port != ground).collect();
+    let ports: Vec<ContactIdx> = (0..device.contacts()).map(ContactIdx).filter(|port| *port != ground).collect();
     let silent = circuit.meters.len();
     let mut circuit = circuit.clone();
     circuit.meters.push(edgesheet::cooldown::Meter { input_ohm: None, ..meter(MeterInput::Across, 1.0) });
@@ -143,7 +144,8 @@ fn port_matrix(device: &Conductance, circuit: &Circuit, taken: &Taken) -> Vec<Ve
 }
 
 fn reversed(device: &Conductance) -> Conductance {
-    Conductance { matrix: device.matrix.transposed(), ..device.clone() }
+    let solved = device.exact().unwrap();
+    Conductance::Exact(Solved { matrix: solved.matrix.transposed(), ..solved.clone() })
 }
 
 /// Reversing the field transposes the port matrix of a fixed circuit (Onsager–Casimir: H. B. G. Casimir, Rev. Mod. Phys.

@@ -35,8 +35,9 @@ fn drawn(made: &Made, polarity: Polarity, size_mm: (f64, f64)) -> (Scene, Vec<Ve
         potentials: potentials.as_deref(),
         size_mm,
     });
-    let matrix = &prediction.conductance.matrix;
-    let rows = (0..matrix.rows()).map(|row| matrix.row(row).iter().map(|value| value.to_f64()).collect());
+    let matrix = &prediction.conductance;
+    let rows = (0..matrix.contacts())
+        .map(|row| (0..matrix.contacts()).map(|column| matrix.entry(row, column).to_f64()).collect());
     (scene, rows.collect())
 }
 

@@ -3,6 +3,7 @@
 //! equations.
 
 use edgesheet::device::Mixing;
+use edgesheet::network::Coupling;
 use edgesheet::number::Rational;
 use edgesheet::quantity::Polarity;
 use edgesheet::resistance::ReadingState;
@@ -293,7 +294,7 @@ fn a_border_of_two_gates_follows_the_one_that_states_a_rule() {
         for polarity in BOTH {
             let point = &made.device.points[0];
             let operating = edgesheet::network::operating(&made.network, &made.device, point, polarity);
-            let full = operating.mixing.iter().filter(|mixing| **mixing == Mixing::Full).count();
+            let full = operating.coupling.iter().filter(|coupling| **coupling == Coupling::Alike(Mixing::Full)).count();
             assert_eq!(full, 2, "both borders of {mixed}");
         }
     }

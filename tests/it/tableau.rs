@@ -55,7 +55,7 @@ fn capacitor(from: usize, farad: f64, hertz: f64) -> Branch {
 
 /// What every meter shows in Ω, complex; none where the circuit has no one solution or no current to divide by.
 pub fn shown(conductance: &Conductance, circuit: &Circuit, taken: &Taken) -> Option<Vec<C>> {
-    let nodes = Nodes(conductance.contacts);
+    let nodes = Nodes(conductance.contacts());
     let [inlet, outlet] = taken.current.map(|contact| contact.0);
     let mut branches = surroundings(&nodes, circuit, taken);
     let ammeter = branches.len();
@@ -126,9 +126,9 @@ fn solve(nodes: &Nodes, conductance: &Conductance, branches: &[Branch]) -> Optio
     let size = nodes.count() + branches.len();
     let mut rows = vec![vec![C::from(0.0); size + 1]; size];
     rows[0][0] = C::from(1.0);
-    for row in 0..conductance.contacts {
-        for column in 0..conductance.contacts {
-            let siemens = conductance.matrix[(row, column)].to_f64() / R_K;
+    for row in 0..conductance.contacts() {
+        for column in 0..conductance.contacts() {
+            let siemens = conductance.entry(row, column).to_f64() / R_K;
             rows[nodes.chip(row)][nodes.chip(column)] += siemens * SCALE;
         }
     }

@@ -8,6 +8,7 @@ use crate::figure::scene::Stroke;
 use crate::layout::Layout;
 use crate::network::BundleIdx;
 use crate::network::Channels;
+use crate::number::Number;
 use crate::number::Rational;
 use crate::quantity::Polarity;
 
@@ -55,13 +56,13 @@ pub struct ChipDrawing<'a> {
     /// Polarity of the field.
     pub polarity: Polarity,
     /// Potential of every bundle, 1 at the inlet and 0 at the outlet; none for all where no current flows.
-    pub potentials: Option<&'a [Option<Rational>]>,
+    pub potentials: Option<&'a [Option<Number>]>,
     /// Width and greatest height in mm.
     pub size_mm: (f64, f64),
 }
 
 impl<'a> ChipDrawing<'a> {
-    fn potential(&self, bundle: BundleIdx) -> Option<&'a Rational> {
+    fn potential(&self, bundle: BundleIdx) -> Option<&'a Number> {
         self.potentials?.get(bundle.0)?.as_ref()
     }
 }
@@ -73,6 +74,6 @@ pub fn draw_chip(drawing: &ChipDrawing<'_>) -> Scene {
 
 /// The pen of channels at a potential between 0 (outlet) and 1 (inlet), or of channels that nothing feeds, as a legend
 /// beside full-size drawings shows it.
-pub fn channel_pen(potential: Option<&Rational>) -> Stroke {
+pub fn channel_pen(potential: Option<&Number>) -> Stroke {
     style::channel_pen(potential, fit::WIDEST_PITCH_MM)
 }

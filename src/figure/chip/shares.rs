@@ -10,7 +10,6 @@ use crate::figure::chip::labels::Placing;
 use crate::figure::chip::strokes::Reach;
 use crate::figure::chip::style;
 use crate::figure::chip::texts::Wording;
-use crate::figure::chip::texts::number;
 use crate::figure::chip::vector::add;
 use crate::figure::chip::vector::between;
 use crate::figure::chip::vector::direction;
@@ -20,7 +19,8 @@ use crate::figure::fonts::Face;
 use crate::figure::scene::At;
 use crate::layout::FaceIdx;
 use crate::network::BandIdx;
-use crate::number::Rational;
+use crate::number::Number;
+use crate::quantity::printed;
 
 /// Places the labels of all channels.
 pub(super) fn place(placing: &mut Placing<'_>) {
@@ -38,7 +38,7 @@ type Pieces = std::collections::BTreeSet<usize>;
 
 /// What is to be written, with the stretches it speaks of: lines side by side with one potential get one label.
 fn wordings<'a>(reaches: &'a [Reach<'a>], placing: &Placing<'_>) -> Vec<(String, Vec<&'a Reach<'a>>)> {
-    let mut groups: Vec<(Pieces, Option<&Rational>, Vec<&Reach<'a>>)> = Vec::new();
+    let mut groups: Vec<(Pieces, Option<&Number>, Vec<&Reach<'a>>)> = Vec::new();
     for reach in reaches {
         let pieces = pieces(reach, placing);
         let potential = reach.potential;
@@ -55,8 +55,9 @@ fn wordings<'a>(reaches: &'a [Reach<'a>], placing: &Placing<'_>) -> Vec<(String,
         }
         groups.push(joined);
     }
-    let between = |value: &&Rational| **value > Rational::ZERO && **value < Rational::ONE;
-    let shares = groups.into_iter().filter_map(|(_, value, reaches)| Some((number(value.filter(between)?), reaches)));
+    let between = |value: &&Number| value.to_f64() > 0.0 && value.to_f64() < 1.0;
+    let shares =
+        groups.into_iter().filter_map(|(_, value, reaches)| Some((printed::share(value.filter(between)?), reaches)));
     let mut all: Vec<(String, Vec<&Reach<'a>>)> = shares.collect();
     all.extend(counts(reaches, placing));
     all

@@ -24,7 +24,7 @@ use crate::figure::scene::Role;
 use crate::figure::scene::Segment;
 use crate::layout::PieceIdx;
 use crate::network::BundleIdx;
-use crate::number::Rational;
+use crate::number::Number;
 
 /// A stretch of a line that keeps its potential.
 #[derive(Clone, Debug, PartialEq)]
@@ -32,7 +32,7 @@ pub(super) struct Reach<'a> {
     pub lane: &'a Lane,
     pub bits: Vec<Bit>,
     /// Potential between 0 (outlet) and 1 (inlet); none where nothing fixes it.
-    pub potential: Option<&'a Rational>,
+    pub potential: Option<&'a Number>,
     /// The bundle in which channels mix here.
     pub mixing: Option<BundleIdx>,
 }

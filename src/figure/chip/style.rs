@@ -2,7 +2,7 @@
 
 use crate::figure::scene::Colour;
 use crate::figure::scene::Stroke;
-use crate::number::Rational;
+use crate::number::Number;
 
 /// Channels at the potential of the inlet (vermillion of the Okabe–Ito set).
 pub(super) const SOURCE: Colour = Colour(213, 94, 0);
@@ -46,7 +46,7 @@ pub(super) fn pen(colour: Colour, width_mm: f64) -> Stroke {
 
 /// The pen for a potential between 0 (outlet) and 1 (inlet) at a pitch: heavy and solid at the inlet, light and solid
 /// at the outlet; in between grey, with longer dashes, more width and more ink the nearer to the inlet.
-pub(super) fn channel_pen(potential: Option<&Rational>, pitch_mm: f64) -> Stroke {
+pub(super) fn channel_pen(potential: Option<&Number>, pitch_mm: f64) -> Stroke {
     let heavy_mm = (HEAVY * pitch_mm).min(0.62);
     let Some(potential) = potential else { return pen(IDLE, 0.3 * heavy_mm) };
     match potential.to_f64() {
@@ -68,8 +68,7 @@ fn ramp(value: f64) -> Colour {
 /// The pens of a drawing of usual size, for a key beside it: at the inlet's potential, in between, at the outlet's.
 pub fn key_pens() -> [Stroke; 3] {
     const PITCH_MM: f64 = 1.2;
-    let half = Rational::fraction(1, 2);
-    [Some(Rational::ONE), half, Some(Rational::ZERO)].map(|share| channel_pen(share.as_ref(), PITCH_MM))
+    [1.0, 0.5, 0.0].map(|share| channel_pen(Some(&Number::Float(share)), PITCH_MM))
 }
 
 /// The area in which channels mix.

@@ -49,14 +49,14 @@ pub(super) struct Fit {
 struct Sampled {
     /// 1/|ν| of every region.
     inverses: Vec<Rational>,
-    islands: Islands,
+    islands: Islands<Rational>,
 }
 
 /// Draws of fillings until twice as many differ as there are regions; more draws than this give no others.
 const MOST_DRAWS: u64 = 400;
 
 impl Fit {
-    /// None where there are too few fillings to check with.
+    /// None where there are too few fillings to check with, and for a setting that is not exact.
     pub fn of(network: &Network, operating: &Operating, regions: &[FillingRegion]) -> Option<Self> {
         let solved = |fillings: &Fillings| sampled(network, &with_fillings(operating, regions, fillings), fillings);
         let checking = checking(regions)?;
@@ -64,9 +64,9 @@ impl Fit {
         let moved = (0..regions.len()).map(|region| moved(&first, region));
         let point: Fillings = regions.iter().map(|region| region.filling.clone()).collect();
         Some(Self {
-            first: solved(&first),
-            moved: moved.map(|fillings| solved(&fillings)).collect(),
-            checked: checking.iter().map(solved).chain([sampled(network, operating, &point)]).collect(),
+            first: solved(&first)?,
+            moved: moved.map(|fillings| solved(&fillings)).collect::<Option<_>>()?,
+            checked: checking.iter().map(solved).chain([sampled(network, operating, &point)]).collect::<Option<_>>()?,
         })
     }
 
@@ -103,9 +103,10 @@ impl Sampled {
     }
 }
 
-fn sampled(network: &Network, operating: &Operating, fillings: &[Rational]) -> Sampled {
-    let islands = Islands::of(&conductance(&channels(network, operating)));
-    Sampled { inverses: inverses(fillings), islands }
+/// None for a setting that is not exact.
+fn sampled(network: &Network, operating: &Operating, fillings: &[Rational]) -> Option<Sampled> {
+    let islands = Islands::of(conductance(&channels(network, operating)).exact()?);
+    Some(Sampled { inverses: inverses(fillings), islands })
 }
 
 /// A filling for every region.
@@ -139,10 +140,10 @@ fn checking(regions: &[FillingRegion]) -> Option<Vec<Fillings>> {
     (found.len() == 2 * regions.len()).then_some(found)
 }
 
-fn inverses(fillings: &[Rational]) -> Vec<Rational> {
+pub(super) fn inverses(fillings: &[Rational]) -> Vec<Rational> {
     fillings.iter().map(|filling| &Rational::ONE / &filling.abs()).collect()
 }
 
-fn dot(a: &[Rational], b: &[Rational]) -> Rational {
+pub(super) fn dot(a: &[Rational], b: &[Rational]) -> Rational {
     a.iter().zip(b).map(|(a, b)| a * b).sum()
 }

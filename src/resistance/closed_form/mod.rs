@@ -2,23 +2,33 @@
 //!
 //! Within one ordering of the fillings the readings of a mesa are usually such sums, unmixed and fully mixed. The a_r are
 //! fitted on small fillings in the ordering of the operating point and verified exactly on at least twice as many
-//! others and on the point itself; where that fails there is no closed form.
+//! others and on the point itself; where that fails there is no closed form. Where channels mix over a length a form must
+//! hold exactly without mixing and with full mixing, and in floats at the point: then no length enters it.
 
 mod fit;
 mod samples;
 mod words;
 
+use crate::conductance::Conductance;
+use crate::conductance::conductance;
 use crate::device::Device;
+use crate::device::Mixing;
 use crate::device::OperatingPoint;
 use crate::device::OverlayIdx;
+use crate::network::Arithmetic;
+use crate::network::Coupling;
 use crate::network::FaceIdx;
 use crate::network::FaceLabel;
 use crate::network::Network;
 use crate::network::Operating;
+use crate::network::channels;
 use crate::number::Rational;
 use crate::resistance::Reading;
 use crate::resistance::closed_form::fit::Entries;
 use crate::resistance::closed_form::fit::Fit;
+use crate::resistance::closed_form::fit::dot;
+use crate::resistance::closed_form::fit::inverses;
+use crate::resistance::islands::Islands;
 
 /// A part of the device with a filling of its own: all faces under one set of overlays. Regions that have one filling at
 /// a point can be tied: what is then said holds while they stay equal.
@@ -53,13 +63,18 @@ pub struct ClosedForms {
     own: usize,
     levels: Vec<Level>,
     magnitudes: bool,
+    /// The setting itself, where it is none of those that are fitted.
+    point: Option<Islands<f64>>,
 }
 
 /// One way to name regions: each on its own, or those of one filling tied.
 struct Level {
-    fit: Fit,
+    /// One, or one without mixing over lengths and one with full mixing in its place: both must agree.
+    fits: Vec<Fit>,
     /// For every region of the fit its index among all regions.
     regions: Vec<usize>,
+    /// 1/|ν| of these at the point.
+    inverses: Vec<Rational>,
 }
 
 impl ClosedForms {
@@ -73,28 +88,46 @@ impl ClosedForms {
         let apart: Vec<usize> = (0..regions.len()).collect();
         let tied = ties(&mut regions);
         let ways = if tied.len() < apart.len() { vec![apart, tied] } else { vec![apart] };
+        let settings = exact_settings(operating);
         let level = |way: Vec<usize>| {
             let named: Vec<FillingRegion> = way.iter().map(|&at| regions[at].clone()).collect();
-            Fit::of(network, operating, &named).map(|fit| Level { fit, regions: way })
+            let fillings: Vec<Rational> = named.iter().map(|region| region.filling.clone()).collect();
+            let fits = settings.iter().map(|setting| Fit::of(network, setting, &named)).collect::<Option<_>>()?;
+            Some(Level { fits, regions: way, inverses: inverses(&fillings) })
         };
-        Self { levels: ways.into_iter().filter_map(level).collect(), regions, own, magnitudes }
+        let levels = ways.into_iter().filter_map(level).collect();
+        let point = match conductance(&channels(network, operating)) {
+            Conductance::Float(solved) => Some(Islands::of(&solved)),
+            Conductance::Exact(_) => None,
+        };
+        Self { levels, regions, own, magnitudes, point }
     }
 
     /// The closed form of a reading, if it has one.
     pub fn form(&self, reading: &Reading) -> Option<ClosedForm> {
-        self.levels.iter().find_map(|level| level.fit.coefficients(reading).map(|found| level.form(found)))
+        let of = |level: &Level| level.agreed(level.fits.iter().map(|fit| fit.coefficients(reading)));
+        self.levels.iter().find_map(|level| Some(level.form(of(level).filter(|a| self.holds(level, a, reading))?)))
     }
 
     /// The closed forms of many readings of a device with so many contacts.
     pub fn forms(&self, readings: &[&Reading], contacts: usize) -> Vec<Option<ClosedForm>> {
         let many = readings.len() > contacts * contacts;
-        let entries: Vec<(&Level, Entries)> =
-            self.levels.iter().filter(|_| many).map(|level| (level, Entries::of(&level.fit, contacts))).collect();
-        let summed = |reading: &Reading| match entries.first() {
-            Some((level, entries)) => entries.sum(reading).map(|found| level.form(found)),
-            None => None,
+        let entries = |level: &Level| level.fits.iter().map(|fit| Entries::of(fit, contacts)).collect::<Vec<_>>();
+        let first = self.levels.first().filter(|_| many).map(|level| (level, entries(level)));
+        let summed = |reading: &Reading| {
+            let (level, entries) = first.as_ref()?;
+            let found = level.agreed(entries.iter().map(|entries| entries.sum(reading)))?;
+            self.holds(level, &found, reading).then(|| level.form(found))
         };
         readings.iter().map(|reading| summed(reading).or_else(|| self.form(reading))).collect()
+    }
+
+    /// Whether a form gives the reading at the point, where that was not fitted.
+    fn holds(&self, level: &Level, coefficients: &[Rational], reading: &Reading) -> bool {
+        let Some(islands) = &self.point else { return true };
+        let value = islands.resistance(reading.current, reading.voltage);
+        let formed = dot(coefficients, &level.inverses).to_f64();
+        value.is_some_and(|value| (value - formed).abs() <= SAME_VALUE * formed.abs().max(1.0))
     }
 
     /// A closed form in words, such as `1/ν(TG) − 1/ν(bulk)`.
@@ -109,9 +142,31 @@ impl ClosedForms {
 }
 
 impl Level {
+    /// What all fits say alike.
+    fn agreed(&self, mut found: impl Iterator<Item = Option<Vec<Rational>>>) -> Option<Vec<Rational>> {
+        let first = found.next()??;
+        found.all(|other| other.as_ref() == Some(&first)).then_some(first)
+    }
+
     fn form(&self, coefficients: Vec<Rational>) -> ClosedForm {
         let terms = self.regions.iter().copied().zip(coefficients);
         ClosedForm { terms: terms.filter(|(_, a)| !a.is_zero()).collect() }
+    }
+}
+
+/// Difference in h/e², of values about 1, that only rounding makes.
+const SAME_VALUE: f64 = 1e-9;
+
+/// The setting in fractions; where lengths enter, without mixing over them and with full mixing.
+fn exact_settings(operating: &Operating) -> Vec<Operating> {
+    let with = |mixing: &Mixing| {
+        let coupling = operating.coupling.iter().map(|coupling| coupling.without_length(mixing)).collect();
+        Operating { coupling, arithmetic: Arithmetic::Exact, ..operating.clone() }
+    };
+    if operating.coupling.iter().any(Coupling::has_length) {
+        vec![with(&Mixing::None), with(&Mixing::Full)]
+    } else {
+        vec![with(&Mixing::None)]
     }
 }
 
