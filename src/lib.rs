@@ -5,7 +5,7 @@
 //! network a `conductance` matrix; with the `circuit` around it that gives every `resistance`. A table becomes
 //! `measured` readings, which `compare` sets against the expected ones. `safety` chooses cautions, `figure` draws,
 //! `report` holds every table and sentence, typed and rounded; `sheet` turns a report into pages, `archive` into a
-//! record. Only `files` touches the disk and only `cli` prints.
+//! record. `guide` holds what the program says of itself. Only `files` touches the disk and only `cli` prints.
 
 pub mod diagnostic;
 
@@ -42,6 +42,8 @@ pub mod report;
 pub mod sheet;
 
 pub mod archive;
+
+pub mod guide;
 
 pub mod files;
 

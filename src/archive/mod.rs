@@ -1,6 +1,11 @@
 //! The record: the machine-readable twin of a sheet.
 //!
-//! Takes a report, gives the bytes of its record. Must never solve anything.
+//! Takes a report, gives the bytes of its record; recognises the files that the program wrote. Must never solve anything.
+
+mod recognise;
+
+pub use recognise::Own;
+pub use recognise::recognise;
 
 use crate::diagnostic::Diagnostic;
 use crate::report::Report;

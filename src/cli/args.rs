@@ -25,6 +25,10 @@ pub enum Command {
     Expect(ExpectOptions),
     /// Print which readings show one region alone, at each polarity
     Isolate(IsolateOptions),
+    /// Say what is understood of device files, cooldown files, readings, records and sheets; all faults at once
+    Check(CheckOptions),
+    /// Write a commented device file, cooldown file and readings to begin with
+    Start(StartOptions),
 }
 
 /// Options of `sheet`.
@@ -83,6 +87,25 @@ pub struct IsolateOptions {
     /// All readings that show it alone, not only the best
     #[arg(long)]
     pub all: bool,
+}
+
+/// Options of `check`.
+#[derive(Debug, Args)]
+#[command(after_help = "Example:\n  edgesheet check demo-devices/top-gated-bar/device.toml \
+                        demo-devices/top-gated-bar/cooldown.toml")]
+pub struct CheckOptions {
+    /// Files to check: device, cooldown, readings, record or sheet
+    #[arg(required = true, value_name = "FILE")]
+    pub files: Vec<PathBuf>,
+}
+
+/// Options of `start`.
+#[derive(Debug, Args)]
+#[command(after_help = "Example:\n  edgesheet start my-device")]
+pub struct StartOptions {
+    /// Folder to write into; made if it is missing. Files that exist are never replaced
+    #[arg(value_name = "DIR")]
+    pub folder: PathBuf,
 }
 
 /// Paper sizes.

@@ -4,15 +4,19 @@
 //! write. Must never contain formulas, geometry or number formatting.
 
 mod args;
+mod beside;
+mod check;
 mod expect;
 mod isolate;
 mod judged;
 mod load;
+mod opened;
 mod point;
 mod published;
 mod select;
 mod sheet;
 mod show;
+mod start;
 
 use std::ffi::OsString;
 use std::process::ExitCode;
@@ -51,6 +55,8 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> ExitCode {
         Command::Sheet(options) => sheet::run(options),
         Command::Expect(options) => expect::run(options),
         Command::Isolate(options) => isolate::run(options),
+        Command::Check(options) => check::run(options),
+        Command::Start(options) => start::run(options),
     };
     match outcome {
         Ok(Finished::Fine) => ExitCode::SUCCESS,

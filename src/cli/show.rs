@@ -77,7 +77,7 @@ fn write_fault(fault: &WriteFault, advice: Option<&str>) -> Diagnostic {
     let finding = match fault {
         WriteFault::Exists(paths) => {
             let names: Vec<String> = paths.iter().map(|path| path.display().to_string()).collect();
-            Diagnostic::fault("sheet-exists", format!("not replaced: {}", names.join(", ")))
+            Diagnostic::fault("file-exists", format!("not replaced: {}", names.join(", ")))
         }
         WriteFault::Refused { path, reason } => {
             Diagnostic::fault("cannot-write", format!("cannot write {}: {reason}", path.display()))

@@ -13,6 +13,7 @@ pub use names::ContactNames;
 pub use names::Names;
 pub use parse::from_bytes;
 pub use parse::from_source;
+pub use parse::without_device;
 
 /// Everything the cooldown file says.
 #[derive(Clone, Debug, PartialEq)]

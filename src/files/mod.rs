@@ -6,7 +6,9 @@
 mod read;
 mod write;
 
+pub use read::neighbours;
 pub use read::read;
+pub use read::same;
 pub use read::sibling;
 pub use write::Existing;
 pub use write::Target;

@@ -34,6 +34,26 @@ pub fn sibling(of: &Path, name: &str) -> PathBuf {
     of.parent().unwrap_or(Path::new("")).join(name)
 }
 
+/// The device and cooldown files (`.toml`) in the folder of a file, by name and without that file itself. A folder that
+/// cannot be read has none.
+pub fn neighbours(of: &Path) -> Vec<PathBuf> {
+    let folder = of.parent().filter(|folder| !folder.as_os_str().is_empty()).unwrap_or(Path::new("."));
+    let entries = std::fs::read_dir(folder).into_iter().flatten().flatten();
+    let names = entries.map(|entry| entry.file_name());
+    let mut found: Vec<PathBuf> = names.map(|name| of.with_file_name(name)).collect();
+    found.retain(|path| path.extension().is_some_and(|ending| ending == "toml") && !same(path, of));
+    found.sort();
+    found
+}
+
+/// Whether two paths lead to one file.
+pub fn same(one: &Path, other: &Path) -> bool {
+    match (one.canonicalize(), other.canonicalize()) {
+        (Ok(one), Ok(other)) => one == other,
+        _ => one == other,
+    }
+}
+
 /// The operating system's reason, without its number.
 pub(super) fn reason(error: &std::io::Error) -> String {
     let text = error.to_string();

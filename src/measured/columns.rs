@@ -13,6 +13,7 @@ use crate::syntax::did_you_mean;
 use crate::syntax::quoted;
 
 /// A column.
+#[allow(missing_docs, reason = "each is explained by its meaning")]
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
 pub enum Column {
     Point,
@@ -52,6 +53,25 @@ const REQUIRED: [Column; 5] =
     [Column::CurrentIn, Column::CurrentOut, Column::VoltagePlus, Column::VoltageMinus, Column::Value];
 
 impl Column {
+    /// What stands in it, in one line.
+    pub fn meaning(self) -> &'static str {
+        match self {
+            Self::Point => "operating point of the device file; may be left out where there is one",
+            Self::Polarity => "+ or toward: field toward you; - or away: field away from you",
+            Self::Field => "field in T with the sign on the console, in place of polarity",
+            Self::CurrentIn => "contact where the current enters: name, pin or plug",
+            Self::CurrentOut => "contact where the current leaves",
+            Self::VoltagePlus => "contact on the + input of the meter",
+            Self::VoltageMinus => "contact on the - input of the meter",
+            Self::Value => "resistance; its unit and uncertainty may stand with it: 12.906(3) kΩ",
+            Self::Unit => "unit of value and u, such as Ω, kΩ, MΩ, ohm, kohm, h/e2",
+            Self::Uncertainty => "uncertainty of the value; a reading without one is shown, not judged",
+            Self::Meter => "meter, as the cooldown file names it; the first where the cell is empty",
+            Self::Set => "readings of one set were taken with all its meters connected at once",
+            Self::Note => "free text, printed on the sheet",
+        }
+    }
+
     /// Its name in the header.
     pub fn name(self) -> &'static str {
         COLUMNS.iter().find(|(column, _)| *column == self).map_or("", |(_, name)| name)

@@ -14,6 +14,7 @@ use crate::quantity::Uncertain;
 mod columns;
 mod cursor;
 mod number_text;
+mod overview;
 mod resistance;
 mod row;
 mod separators;
@@ -21,6 +22,11 @@ mod split;
 mod table;
 mod unit;
 
+pub use columns::COLUMNS;
+pub use columns::Column;
+pub use overview::Overview;
+pub use overview::is_table;
+pub use overview::overview;
 pub use table::from_source;
 pub use table::source_from_bytes;
 

@@ -28,10 +28,12 @@ mod printed;
 mod rows;
 mod small_table;
 mod sources;
+mod started;
 mod stated;
 mod table;
 mod table_text;
 mod texts;
+mod understood;
 mod verdict;
 mod words;
 
@@ -55,6 +57,8 @@ pub use sources::PointSource;
 pub use sources::RowSource;
 pub use sources::Sources;
 pub use sources::preferred;
+pub use started::NEVER_REPLACED;
+pub use started::started;
 pub use table_text::IsolatedPoint;
 pub use table_text::any_has_region;
 pub use table_text::expected_table;
@@ -62,6 +66,14 @@ pub use table_text::isolated_table;
 pub use table_text::region_called;
 pub use table_text::unknown_region;
 pub use texts::Texts;
+pub use understood::Understood;
+pub use understood::checked;
+pub use understood::understood_alone;
+pub use understood::understood_cooldown;
+pub use understood::understood_device;
+pub use understood::understood_output;
+pub use understood::understood_readings;
+pub use understood::understood_table;
 pub use words::Words;
 
 /// Everything a sheet says.

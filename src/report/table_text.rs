@@ -134,7 +134,7 @@ fn table_line((name, cells, form): &TableLine, first: usize, widths: &[usize]) -
     lines
 }
 
-fn wrapped(text: &str, width: usize) -> Vec<String> {
+pub(super) fn wrapped(text: &str, width: usize) -> Vec<String> {
     let mut lines = vec![String::new()];
     for word in text.split(' ') {
         let last =

@@ -52,7 +52,7 @@ pub fn read(source: &Arc<Source>, file: &'static FileSpec) -> Result<Checked, Fa
 /// The tree and all faults of syntax. At a line without `=` the parser leaves the rest of the file unread, so such a line
 /// is blanked, byte by byte to keep every place, and the text parsed again. What stands below a header that is not closed
 /// stays unread until the header is mended.
-fn parse(source: &Arc<Source>) -> (Table, Vec<toml::de::Error>) {
+pub(super) fn parse(source: &Arc<Source>) -> (Table, Vec<toml::de::Error>) {
     let mut text = source.text.clone();
     let mut blanked = Vec::new();
     loop {

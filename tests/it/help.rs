@@ -23,6 +23,9 @@ pub fn example(line: &str, name: &str) -> Ran {
     if let Some(at) = words.iter().position(|word| word == "-o") {
         words[at + 1] = fresh(name).display().to_string();
     }
+    if words.first().is_some_and(|command| command == "start") {
+        words[1] = fresh(name).display().to_string();
+    }
     ran(&mut program(&repository(), words))
 }
 

@@ -35,6 +35,7 @@ const IMPORTS: &[(&str, &str)] = &[
     ),
     ("sheet", "diagnostic quantity figure report"),
     ("archive", "base report"),
+    ("guide", "base measured"),
     ("files", "diagnostic"),
 ];
 

@@ -37,6 +37,12 @@ pub fn from_source(source: &Arc<Source>, device: &Device) -> Outcome<Cooldown> {
     }
 }
 
+/// What can be checked without the device: syntax, keys, kinds and units. Gives the file as it is written.
+pub fn without_device(source: &Arc<Source>) -> Outcome<Table> {
+    let Checked { root, findings, .. } = syntax::read(source, &COOLDOWN_FILE)?;
+    findings.finish(root)
+}
+
 fn cooldown(root: &Table, device: &Device, findings: &mut Findings) -> Option<Cooldown> {
     let contacts = Names::of_contacts(device);
     findings.extend(identity::another_device(root, device));

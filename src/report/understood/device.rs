@@ -1,0 +1,191 @@
+//! What is understood of a device file.
+
+use crate::device::Contact;
+use crate::device::ContactIdx;
+use crate::device::ContactShape;
+use crate::device::Corner;
+use crate::device::Device;
+use crate::device::Edge;
+use crate::device::EdgeRules;
+use crate::device::Ladder;
+use crate::device::MesaShape;
+use crate::device::Mixing;
+use crate::device::OperatingPoint;
+use crate::device::Overlay;
+use crate::device::OverlayIdx;
+use crate::device::OverlayKind;
+use crate::device::OverlayShape;
+use crate::quantity::Nanometres;
+use crate::quantity::printed::as_given;
+use crate::quantity::printed::fraction;
+use crate::report::Understood;
+use crate::report::names;
+use crate::report::printed::filling;
+
+/// A device, and where it could be laid out, its contacts rim by rim, clockwise.
+pub fn understood_device(file: &str, device: &Device, rims: Option<&[Vec<ContactIdx>]>) -> Understood {
+    let about: Vec<&str> =
+        [device.title.as_str(), device.material.as_str()].into_iter().filter(|text| !text.is_empty()).collect();
+    let overlays = |kind| device.overlays.iter().filter(move |overlay| overlay.kind == kind).map(overlay_row).collect();
+    let kind = format!("device file of {}", device.id);
+    Understood::new(file, kind)
+        .saying("about", if about.is_empty() { Vec::new() } else { vec![about.join("; ")] })
+        .saying("layer", layer(device))
+        .saying("mesa", vec![mesa(&device.mesa.shape)])
+        .with("contacts", device.contacts.iter().map(contact_row).collect())
+        .saying("rim", rims.map(|rims| rim_lines(device, rims)).unwrap_or_default())
+        .with("gates", overlays(OverlayKind::Gate))
+        .with("steps", overlays(OverlayKind::Step))
+        .saying("plateaus", vec![ladder(&device.ladder)])
+        .saying("mixing", vec![mixing(&device.edge)])
+        .with("points", device.points.iter().map(|point| point_row(device, point)).collect())
+        .saying("assumed", unnamed_gates(device))
+        .saying("readings", vec![readings(device)])
+}
+
+fn layer(device: &Device) -> Vec<String> {
+    let density = device.layer.density_per_m2.map(|value| format!("density {} m⁻²", as_given(value)));
+    let mobility = device.layer.mobility_m2_per_vs.map(|value| format!("mobility {} m²/(V s)", as_given(value)));
+    let parts: Vec<String> = density.into_iter().chain(mobility).collect();
+    if parts.is_empty() { parts } else { vec![parts.join(", ")] }
+}
+
+fn mesa(shape: &MesaShape) -> String {
+    match shape {
+        MesaShape::Bar { length, width } => {
+            format!("bar, {} × {} µm: x from 0 at the left end, y from 0 at the lower edge", um(*length), um(*width))
+        }
+    }
+}
+
+fn um(length: Nanometres) -> String {
+    as_given(length.to_um())
+}
+
+fn contact_row(contact: &Contact) -> Vec<String> {
+    let pad = contact.pad.as_ref().map(|pad| format!("pad {pad}"));
+    let pin = contact.pin.as_ref().map(|pin| format!("pin {pin}"));
+    let more: Vec<String> = [pin, pad, transmission(contact)].into_iter().flatten().collect();
+    vec![contact.name.clone(), contact_place(&contact.shape), more.join(", ")]
+}
+
+fn transmission(contact: &Contact) -> Option<String> {
+    let perfect = contact.transmission.iter().all(|share| *share == crate::number::Rational::ONE);
+    let shares: Vec<String> = contact.transmission.iter().map(fraction).collect();
+    (!perfect).then(|| format!("transmission {}", shares.join(", ")))
+}
+
+fn contact_place(shape: &ContactShape) -> String {
+    match shape {
+        ContactShape::Edge { edge, centre, width, arm } => {
+            let (edge, along) = match edge {
+                Edge::Left => ("left end", "y"),
+                Edge::Top => ("top edge", "x"),
+                Edge::Right => ("right end", "y"),
+                Edge::Bottom => ("bottom edge", "x"),
+            };
+            let stretch = match centre.zip(*width) {
+                Some((centre, width)) => format!("{along} {}", between(centre, width)),
+                None => "whole".to_owned(),
+            };
+            let arm = if arm.0 == 0 { String::new() } else { format!(", on an arm of {} µm", um(*arm)) };
+            format!("{edge}, {stretch}{arm}")
+        }
+        ContactShape::Outline(corners) => outline(corners),
+    }
+}
+
+/// The stretch of this width round a centre: `140 to 160 µm`.
+fn between(centre: Nanometres, width: Nanometres) -> String {
+    let side = width.to_um() / 2.0;
+    format!("{} to {} µm", as_given(centre.to_um() - side), as_given(centre.to_um() + side))
+}
+
+fn outline(corners: &[Corner]) -> String {
+    let range = |values: &mut dyn Iterator<Item = Nanometres>| {
+        let values: Vec<Nanometres> = values.collect();
+        let ends = values.iter().min().zip(values.iter().max());
+        ends.map_or_else(String::new, |(low, high)| format!("{} to {} µm", um(*low), um(*high)))
+    };
+    let x = range(&mut corners.iter().map(|corner| corner.0));
+    let y = range(&mut corners.iter().map(|corner| corner.1));
+    format!("outline of {} corners, x {x}, y {y}", corners.len())
+}
+
+fn rim_lines(device: &Device, rims: &[Vec<ContactIdx>]) -> Vec<String> {
+    let line = |(at, rim): (usize, &Vec<ContactIdx>)| {
+        let contacts: Vec<&str> = rim.iter().map(|contact| names::contact_name(device, *contact)).collect();
+        let which = if rims.len() == 1 { String::new() } else { format!("rim {}, ", at + 1) };
+        format!("{which}clockwise: {}", contacts.join(", "))
+    };
+    rims.iter().enumerate().map(line).collect()
+}
+
+fn overlay_row(overlay: &Overlay) -> Vec<String> {
+    let place = match &overlay.shape {
+        OverlayShape::Across { from, to } => format!("x {} to {} µm, across the bar", um(*from), um(*to)),
+        OverlayShape::Outline(corners) => outline(corners),
+    };
+    let limits = overlay.limits_v.map(|(low, high)| format!("{} to {} V", as_given(low), as_given(high)));
+    let lever = overlay.density_per_m2_per_v.map(|value| format!("{} m⁻² per V", as_given(value)));
+    let mixing = overlay.mixing.as_ref().map(|mixing| format!("mixing along its borders: {}", rule(mixing)));
+    let more: Vec<String> = [limits, lever, mixing].into_iter().flatten().collect();
+    vec![overlay.name.clone(), place, more.join(", ")]
+}
+
+fn ladder(ladder: &Ladder) -> String {
+    match ladder {
+        Ladder::SpinSplit => "spin-split: at every integer".to_owned(),
+        Ladder::SpinDegenerate => "spin-degenerate: at 2, 4, 6, … of either sign".to_owned(),
+        Ladder::Graphene => "graphene: at 2, 6, 10, … of either sign".to_owned(),
+        Ladder::BilayerGraphene => "bilayer-graphene: at 4, 8, 12, … of either sign".to_owned(),
+        Ladder::Own(steps) => format!("at {}", steps.iter().map(filling).collect::<Vec<_>>().join(", ")),
+    }
+}
+
+fn rule(mixing: &Mixing) -> String {
+    match mixing {
+        Mixing::None => "none".to_owned(),
+        Mixing::Full => "full".to_owned(),
+        Mixing::Over(length) => format!("over {} µm", um(*length)),
+    }
+}
+
+fn mixing(edge: &EdgeRules) -> String {
+    let [rim, interface, opposite] = [&edge.rim, &edge.interface, &edge.opposite].map(rule);
+    format!("rim {rim}; borders between regions of one sign {interface}; between opposite signs {opposite}")
+}
+
+fn point_row(device: &Device, point: &OperatingPoint) -> Vec<String> {
+    let volts = point.gates_v.iter().map(|(gate, volts)| {
+        let name = device.overlays.get(gate.0).map_or("", |overlay| overlay.name.as_str());
+        format!("{name} at {} V", as_given(*volts))
+    });
+    let own = (point.edge != device.edge).then(|| format!("mixing: {}", mixing(&point.edge)));
+    let more = std::iter::once(names::fillings(device, point)).chain(volts).chain(own);
+    vec![point.name.clone(), names::field(point).unwrap_or_default(), more.collect::<Vec<_>>().join("; ")]
+}
+
+/// A gate that a point does not name could as well have been forgotten.
+fn unnamed_gates(device: &Device) -> Vec<String> {
+    let gates = || device.overlays.iter().enumerate().filter(|(_, overlay)| overlay.kind == OverlayKind::Gate);
+    let named = |point: &OperatingPoint, at: usize| point.fillings.iter().any(|(cover, _)| cover == &[OverlayIdx(at)]);
+    let line = |point: &OperatingPoint| {
+        let unnamed: Vec<&str> =
+            gates().filter(|(at, _)| !named(point, *at)).map(|(_, gate)| gate.name.as_str()).collect();
+        let names = unnamed.join(", ");
+        let verb = if unnamed.len() == 1 { "has" } else { "have" };
+        let filling = filling(&point.bulk);
+        (!unnamed.is_empty())
+            .then(|| format!("{names} {verb} the bulk filling {filling} at “{}”: not named there", point.name))
+    };
+    device.points.iter().filter_map(line).collect()
+}
+
+fn readings(device: &Device) -> String {
+    match device.readings.len() {
+        0 => "the standard set, as none is named".to_owned(),
+        1 => "1, as named".to_owned(),
+        count => format!("{count}, as named"),
+    }
+}
