@@ -39,8 +39,7 @@ pub struct Loaded {
 pub fn load(device: &Path, cooldown: Option<&Path>) -> Result<Loaded, Failure> {
     let mut findings = Findings::default();
     let mut inputs = Vec::new();
-    let device =
-        source((device, None), &mut inputs, &mut findings).and_then(|s| findings.take(crate::device::from_source(&s)));
+    let device = source((device, None), &mut inputs, &mut findings).and_then(|text| device_of(&text, &mut findings));
     let layout = device.as_ref().and_then(|device| findings.take(crate::layout::layout(device)));
     let mut measured = Some(Vec::new());
     let mut read_cooldown = None;
@@ -61,6 +60,14 @@ pub fn load(device: &Path, cooldown: Option<&Path>) -> Result<Loaded, Failure> {
     let Noted { notices, .. } = findings.finish(()).map_err(Failure::Input)?;
     let network = crate::network::network(&layout, device.contacts.len());
     Ok(Loaded { device, layout, network, cooldown: read_cooldown, measured, inputs, notices })
+}
+
+/// The device; where its file has faults, those of what can be drawn of it are told as well.
+fn device_of(text: &Arc<Source>, findings: &mut Findings) -> Option<Device> {
+    let device = findings.take(crate::device::from_source(text));
+    let drawing = if device.is_none() { crate::device::drawing(text) } else { None };
+    findings.extend(drawing.iter().flat_map(crate::layout::faults));
+    device
 }
 
 fn readings(

@@ -15,6 +15,7 @@ mod parse;
 pub use ladder::Ladder;
 pub use ladder::LadderPlace;
 pub use names::Names;
+pub use parse::drawing;
 pub use parse::from_bytes;
 pub use parse::from_source;
 
@@ -83,15 +84,45 @@ pub enum MesaShape {
         /// Extent along y.
         width: Nanometres,
     },
+    /// A square with an arm on each side; x from 0 at the end of the left arm, y from 0 at the end of the lower arm.
+    Cross {
+        /// From the square in the middle to the end of an arm.
+        arm_length: Nanometres,
+        /// Width of an arm, and side of the square in the middle.
+        arm_width: Nanometres,
+    },
+    /// A disc with a round opening in its middle, which is the origin.
+    Ring {
+        /// Diameter of the outer rim.
+        outer_diameter: Nanometres,
+        /// Diameter of the opening, below the outer one.
+        inner_diameter: Nanometres,
+    },
+    /// Any outline with any openings.
+    Outline {
+        /// The outer rim.
+        outline: Outline,
+        /// The openings.
+        cutouts: Vec<Outline>,
+    },
 }
 
 /// A corner of an outline: (x, y), x to the right, y up.
 pub type Corner = (Nanometres, Nanometres);
 
+/// A closed outline as written: at least three corners in either sense.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Outline {
+    /// Its corners in order.
+    pub corners: Vec<Corner>,
+    /// Where they stand in the file.
+    pub place: Place,
+}
+
 /// Where a contact sits on the mesa.
 #[derive(Clone, Debug, PartialEq)]
 pub enum ContactShape {
-    /// On one straight edge of a bar, at the end of an arm of length `arm` (0: on the edge itself).
+    /// On one straight edge of a bar or end of a cross, at the end of an arm of length `arm` (0: on the edge itself).
     Edge {
         /// Which edge.
         edge: Edge,
@@ -102,20 +133,52 @@ pub enum ContactShape {
         /// Length of the arm of mesa that carries the contact.
         arm: Nanometres,
     },
+    /// On a rim of a ring.
+    Round {
+        /// Which rim.
+        circle: Circle,
+        /// Where on it; none means the whole rim.
+        arc: Option<Arc>,
+    },
+    /// On any rim of an outline: the stretch of rim of this width, round corners too, whose middle is next to `at`.
+    Rim {
+        /// A point on the rim, or nearly.
+        at: Corner,
+        /// Length of the stretch along the rim.
+        width: Nanometres,
+    },
     /// Any outline.
     Outline(Vec<Corner>),
 }
 
-/// The four edges of a bar.
+/// The rims of a ring.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub enum Circle {
+    /// The outer one.
+    Outer,
+    /// That of the opening.
+    Inner,
+}
+
+/// A stretch of a round rim.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Arc {
+    /// Direction of its middle from the centre, in degrees anticlockwise from the x axis.
+    pub angle_deg: f64,
+    /// Length along the rim.
+    pub width: Nanometres,
+}
+
+/// The four edges of a bar, and the ends of the four arms of a cross.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
 pub enum Edge {
-    /// x = 0.
+    /// At the lowest x.
     Left,
-    /// y = width.
+    /// At the highest y.
     Top,
-    /// x = length.
+    /// At the highest x.
     Right,
-    /// y = 0.
+    /// At the lowest y.
     Bottom,
 }
 
@@ -171,7 +234,7 @@ pub struct Overlay {
 /// The extent of an overlay.
 #[derive(Clone, Debug, PartialEq)]
 pub enum OverlayShape {
-    /// Across the whole bar between two x.
+    /// Across the whole mesa between two x.
     Across {
         /// Left border.
         from: Nanometres,

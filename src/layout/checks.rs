@@ -13,10 +13,12 @@ use crate::layout::FaceIdx;
 use crate::layout::FaceLabel;
 use crate::layout::Layout;
 use crate::layout::Owner;
+use crate::layout::Piece;
 use crate::layout::Topology;
 use crate::layout::VertexIdx;
 use crate::layout::edges::Windings;
 use crate::layout::from_device::Outlines;
+use crate::layout::label::on_mesa;
 
 /// A device and all that was made of it.
 #[derive(Clone, Copy, Debug)]
@@ -109,9 +111,10 @@ fn meeting(device: &Device, pair: Pair, kind: Meeting) -> Option<Diagnostic> {
     Some(Diagnostic::fault(code, message).at(&other.place).hint("leave a gap between them, or make them one contact"))
 }
 
-/// A contact needs an edge in common with the mesa; one that borders a single region and nothing else is never reached.
+/// A contact needs an edge in common with the mesa; one at which no other border ends is never reached.
 fn reach(drawn: &Drawn, contact: ContactIdx) -> Option<Diagnostic> {
-    let Topology { faces, pieces, .. } = &drawn.layout.topology;
+    let topology = &drawn.layout.topology;
+    let Topology { faces, pieces, .. } = topology;
     let own = |face: FaceIdx| faces[face.0] == FaceLabel::Contact(contact);
     let neighbours: BTreeSet<FaceIdx> = pieces
         .iter()
@@ -129,12 +132,20 @@ fn reach(drawn: &Drawn, contact: ContactIdx) -> Option<Diagnostic> {
         let hint = "move it so that it covers or borders a stretch of the rim";
         return Some(Diagnostic::fault("contact-off-mesa", message).at(place).hint(hint));
     }
-    (neighbours.len() == 1).then(|| {
-        let message =
-            format!("contact \"{name}\" lies wholly inside one region: on a plateau no edge channel reaches it");
+    (!meets_a_border(topology, own)).then(|| {
+        let message = format!("contact \"{name}\" meets no border: on a plateau no edge channel reaches it");
         Diagnostic::notice("contact-isolated", message)
             .at(place)
-            .hint("extend it to the rim if it is meant to be measured")
+            .hint("it must meet the rim, or the border of a gate or step, if it is meant to be measured")
+    })
+}
+
+/// Whether a piece that is none of a contact's own sides ends at it.
+fn meets_a_border(topology: &Topology, own: impl Fn(FaceIdx) -> bool) -> bool {
+    topology.fans.iter().any(|fan| {
+        let sides = fan.iter().map(|spoke| &topology.pieces[spoke.piece.0]);
+        let is_own = |piece: &&Piece| own(piece.left) || own(piece.right);
+        sides.clone().any(|piece| is_own(&piece)) && sides.clone().any(|piece| !is_own(&piece))
     })
 }
 
@@ -143,9 +154,9 @@ fn presence(drawn: &Drawn, overlay: OverlayIdx) -> Option<Diagnostic> {
     if drawn.layout.topology.faces.iter().any(over) {
         return None;
     }
-    let inside = |windings: &Windings, owner| windings.iter().any(|(other, winding)| *other == owner && *winding > 0);
-    let hidden = |windings: &&Windings| inside(windings, Owner::Overlay(overlay)) && inside(windings, Owner::Mesa);
     let owner = Owner::Overlay(overlay);
+    let inside = |windings: &Windings| windings.iter().any(|(other, winding)| *other == owner && *winding > 0);
+    let hidden = |windings: &&Windings| inside(windings) && on_mesa(windings);
     let (words, place) = (owner.words(drawn.device), owner.place(drawn.device));
     if drawn.windings.iter().any(|windings| hidden(&windings)) {
         let message = format!("{words} lies wholly under contacts and changes nothing");

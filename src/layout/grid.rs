@@ -33,6 +33,11 @@ impl Grid {
     }
 }
 
+/// The whole number of pixels nearest to a length in pixels.
+pub(super) fn round_to_cell(pixels: f64) -> i64 {
+    libm::round(pixels) as i64
+}
+
 /// `b − a`.
 pub(super) fn step(a: Cell, b: Cell) -> (i128, i128) {
     (i128::from(b.0) - i128::from(a.0), i128::from(b.1) - i128::from(a.1))
@@ -76,8 +81,9 @@ pub(super) fn crossing(a: (Cell, Cell), b: (Cell, Cell)) -> Option<Cell> {
     inside.then(|| (nearest(a.0.0, u.0), nearest(a.0.1, u.1)))
 }
 
-/// The whole number nearest to `numerator / denominator`, halves upward. It fits because a crossing lies between corners.
-fn rounded(numerator: i128, denominator: i128) -> i64 {
+/// The whole number nearest to `numerator / denominator`, halves upward. It fits where the result lies between
+/// corners.
+pub(super) fn rounded(numerator: i128, denominator: i128) -> i64 {
     (2 * numerator + denominator).div_euclid(2 * denominator) as i64
 }
 

@@ -65,7 +65,13 @@ fn windings(edges: &[Edge], half_edges: &HalfEdges) -> Vec<Windings> {
     found.into_iter().map(Option::unwrap_or_default).collect()
 }
 
-/// A contact is its whole outline; the mesa is where its parts add up to more than nothing; overlays count only on it.
+/// Whether a face lies on the mesa: where its parts add up to more than nothing and no cut-out takes it away.
+pub(super) fn on_mesa(windings: &Windings) -> bool {
+    let inside = || windings.iter().filter(|(_, winding)| *winding > 0).map(|(owner, _)| *owner);
+    inside().any(|owner| owner == Owner::Mesa) && !inside().any(|owner| matches!(owner, Owner::Cutout(_)))
+}
+
+/// A contact is its whole outline, whatever lies under it; overlays count only on the mesa.
 fn label(windings: &Windings) -> FaceLabel {
     let inside = || windings.iter().filter(|(_, winding)| *winding > 0).map(|(owner, _)| *owner);
     let contact = inside().find_map(|owner| match owner {
@@ -78,7 +84,7 @@ fn label(windings: &Windings) -> FaceLabel {
     });
     match contact {
         Some(contact) => FaceLabel::Contact(contact),
-        None if inside().any(|owner| owner == Owner::Mesa) => FaceLabel::Mesa(cover.collect()),
+        None if on_mesa(windings) => FaceLabel::Mesa(cover.collect()),
         None => FaceLabel::Vacuum,
     }
 }

@@ -8,22 +8,31 @@
 use crate::device::ContactIdx;
 use crate::device::Device;
 use crate::device::OverlayIdx;
+use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Findings;
 use crate::diagnostic::Outcome;
+use crate::diagnostic::Severity;
 
-mod bar;
 mod checks;
+mod circle;
+mod cutouts;
+mod draughts;
 mod edges;
+mod ends;
 mod from_device;
 mod grid;
 mod half_edges;
 mod label;
 mod merge;
+mod mesa;
 mod nearness;
 mod notices;
 mod outline;
 mod owner;
+mod rim;
+mod rim_contacts;
 mod snap;
+mod strip;
 
 #[cfg(test)]
 pub(crate) mod fixture;
@@ -52,12 +61,19 @@ pub fn layout(device: &Device) -> Outcome<Layout> {
     let merged = arrangement.merged();
     let layout = merge::layout(&merged, outlines.grid);
     let drawn = checks::Drawn { device, outlines: &outlines, layout: &layout, windings: &windings };
+    findings.extend(cutouts::checks(&drawn, &arrangement));
     findings.extend(checks::checks(&drawn));
     if !findings.has_faults() {
         findings.extend(notices::notices(&drawn));
         findings.extend(nearness::notices(&drawn, &merged));
     }
     findings.finish(layout)
+}
+
+/// The faults of a drawing that is not whole, because other parts of its file have faults; notices could be untrue.
+pub fn faults(device: &Device) -> Vec<Diagnostic> {
+    let Err(found) = layout(device) else { return Vec::new() };
+    found.0.into_iter().filter(|finding| finding.severity == Severity::Fault).collect()
 }
 
 /// Index of a face of the subdivision. Face 0 is the unbounded one.

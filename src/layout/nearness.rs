@@ -29,7 +29,11 @@ pub(super) fn notices(drawn: &Drawn, merged: &Subdivision) -> Vec<Diagnostic> {
 fn joined(drawn: &Drawn) -> Vec<Diagnostic> {
     let segments = drawn.outlines.segments();
     let mut corners: BTreeMap<Cell, Owner> = BTreeMap::new();
-    segments.iter().for_each(|segment| _ = corners.entry(segment.a).or_insert(segment.owner));
+    let written = segments.iter().filter(|segment| !drawn.outlines.made.contains(&segment.a));
+    for segment in written {
+        let foremost = corners.entry(segment.a).or_insert(segment.owner);
+        *foremost = segment.owner.min(*foremost);
+    }
     let places: Vec<Cell> = corners.keys().copied().collect();
     let mut found: BTreeMap<(Owner, Owner), Cell> = BTreeMap::new();
     for segment in &segments {

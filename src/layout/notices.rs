@@ -3,11 +3,15 @@
 use std::collections::BTreeMap;
 
 use crate::diagnostic::Diagnostic;
+use crate::layout::FaceIdx;
 use crate::layout::FaceLabel;
 use crate::layout::Owner;
+use crate::layout::Point;
 use crate::layout::VertexIdx;
 use crate::layout::checks::Drawn;
+use crate::layout::outline;
 use crate::layout::owner::at_um;
+use crate::layout::owner::point_um;
 
 /// All notices of this kind.
 pub(super) fn notices(drawn: &Drawn) -> Vec<Diagnostic> {
@@ -25,25 +29,42 @@ fn parts(drawn: &Drawn) -> Vec<Diagnostic> {
         let (one, other) = (part[piece.left.0], part[piece.right.0]);
         part.iter_mut().filter(|number| **number == one).for_each(|number| *number = other);
     }
-    // For every part with mesa: whether it has a contact.
-    let mut reached: BTreeMap<usize, bool> = BTreeMap::new();
+    // For every part with mesa: whether it has a contact, and the rectangle round it.
+    let mut reached: BTreeMap<usize, (bool, Option<Extent>)> = BTreeMap::new();
     for (face, _) in topology.faces.iter().enumerate().filter(|(_, label)| matches!(label, FaceLabel::Mesa(_))) {
-        reached.entry(part[face]).or_insert(false);
+        let (_, extent) = reached.entry(part[face]).or_insert((false, None));
+        *extent = joined(*extent, extent_of(drawn, FaceIdx(face)));
     }
     for (face, _) in topology.faces.iter().enumerate().filter(|(_, label)| matches!(label, FaceLabel::Contact(_))) {
-        reached.entry(part[face]).and_modify(|has| *has = true);
+        reached.entry(part[face]).and_modify(|(has, _)| *has = true);
     }
-    let bare = reached.values().filter(|has| !**has).count();
     let place = &drawn.device.mesa.place;
     let several = (reached.len() > 1).then(|| {
         let message = format!("the mesa falls into {} separate parts", reached.len());
         Diagnostic::notice("mesa-parts", message).at(place).hint("no current passes from one part to another")
     });
-    let unreached = (bare > 0).then(|| {
-        let message = format!("{bare} of the mesa's parts has no contact");
-        Diagnostic::notice("mesa-unreached", message).at(place).hint("add a contact, or leave that part out")
-    });
-    several.into_iter().chain(unreached).collect()
+    let bare = reached.values().filter(|(has, _)| !has).filter_map(|(_, extent)| *extent);
+    several.into_iter().chain(bare.map(|extent| unreached(drawn, extent))).collect()
+}
+
+/// Lower left and upper right corner.
+type Extent = (Point, Point);
+
+fn extent_of(drawn: &Drawn, face: FaceIdx) -> Option<Extent> {
+    let borders = drawn.layout.topology.pieces.iter().zip(&drawn.layout.positions.pieces);
+    let own = borders.filter(|(piece, _)| piece.left == face || piece.right == face);
+    outline::extent(&own.flat_map(|(_, corners)| corners.iter().copied()).collect::<Vec<Point>>())
+}
+
+fn joined(one: Option<Extent>, other: Option<Extent>) -> Option<Extent> {
+    let corners: Vec<Point> = one.into_iter().chain(other).flat_map(|(low, high)| [low, high]).collect();
+    outline::extent(&corners)
+}
+
+fn unreached(drawn: &Drawn, (low, high): Extent) -> Diagnostic {
+    let message = format!("the part of the mesa from {} to {} has no contact", point_um(low), point_um(high));
+    let hint = "add a contact, or leave that part out";
+    Diagnostic::notice("mesa-unreached", message).at(&drawn.device.mesa.place).hint(hint)
 }
 
 /// Vertices where the same kind of mesa lies on two sides and something else between, or where the mesa narrows to

@@ -46,6 +46,15 @@ pub(super) fn sides(ring: &[Cell]) -> impl Iterator<Item = Side> + '_ {
     ring.iter().copied().zip(ring.iter().copied().cycle().skip(1))
 }
 
+/// The lower left and the upper right corner of the rectangle round some pixels; none round none.
+pub(super) fn extent(cells: &[Cell]) -> Option<(Cell, Cell)> {
+    let first = *cells.first()?;
+    let wider = |(low, high): (Cell, Cell), cell: &Cell| {
+        ((low.0.min(cell.0), low.1.min(cell.1)), (high.0.max(cell.0), high.1.max(cell.1)))
+    };
+    Some(cells.iter().fold((first, first), wider))
+}
+
 fn without_repeats(corners: &[Cell]) -> Vec<Cell> {
     let mut kept = corners.to_vec();
     kept.dedup();
@@ -85,7 +94,7 @@ fn first_crossing(ring: &[Cell]) -> Option<(Side, Side, Cell)> {
 }
 
 /// A point that two sides have in common.
-fn meeting(one: Side, other: Side) -> Option<Cell> {
+pub(super) fn meeting(one: Side, other: Side) -> Option<Cell> {
     let on = |line: Side, p: Cell| side(line.0, line.1, p) == 0 && between(line.0, line.1, p);
     let ends = [(other, one.0), (other, one.1), (one, other.0), (one, other.1)];
     let touching = || ends.into_iter().find(|(line, p)| on(*line, *p)).map(|(_, p)| p);

@@ -2,17 +2,21 @@
 
 use crate::device::ContactIdx;
 use crate::device::Device;
+use crate::device::MesaShape;
 use crate::device::OverlayIdx;
 use crate::device::OverlayKind;
 use crate::diagnostic::Place;
+use crate::layout::Point;
 use crate::layout::grid::Cell;
 use crate::layout::grid::Grid;
 
 /// Mesa, contact or overlay.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
 pub(super) enum Owner {
-    /// All parts of the mesa together.
+    /// The mesa with all arms, cut-outs not taken out.
     Mesa,
+    /// One opening in the mesa, in the order of the file.
+    Cutout(usize),
     /// One contact.
     Contact(ContactIdx),
     /// One gate or step.
@@ -24,6 +28,10 @@ impl Owner {
     pub(super) fn words(self, device: &Device) -> String {
         match self {
             Self::Mesa => "the mesa".to_string(),
+            Self::Cutout(_) if matches!(device.mesa.shape, MesaShape::Ring { .. }) => {
+                "the opening of the ring".to_string()
+            }
+            Self::Cutout(cutout) => format!("cut-out {}", cutout + 1),
             Self::Contact(contact) => format!("contact \"{}\"", device.contacts[contact.0].name),
             Self::Overlay(overlay) => {
                 let Device { overlays, .. } = device;
@@ -36,10 +44,17 @@ impl Owner {
         }
     }
 
-    /// The table in the device file.
+    /// Where the device file has it: its table, or the corners of an outline of the mesa.
     pub(super) fn place(self, device: &Device) -> &Place {
+        match (self, &device.mesa.shape) {
+            (Self::Mesa, MesaShape::Outline { outline, .. }) => return &outline.place,
+            (Self::Cutout(cutout), MesaShape::Outline { cutouts, .. }) if cutout < cutouts.len() => {
+                return &cutouts[cutout].place;
+            }
+            _ => {}
+        }
         match self {
-            Self::Mesa => &device.mesa.place,
+            Self::Mesa | Self::Cutout(_) => &device.mesa.place,
             Self::Contact(contact) => &device.contacts[contact.0].place,
             Self::Overlay(overlay) => &device.overlays[overlay.0].place,
         }
@@ -51,13 +66,18 @@ pub(super) fn um(nm: i64) -> String {
     format!("{} µm", um_digits(nm))
 }
 
-/// A point as `(12.5, 0) µm`.
+/// The centre of a pixel as `(12.5, 0) µm`.
 pub(super) fn at_um(grid: Grid, cell: Cell) -> String {
-    let (x, y) = grid.point(cell);
+    point_um(grid.point(cell))
+}
+
+/// A point as `(12.5, 0) µm`.
+pub(super) fn point_um((x, y): Point) -> String {
     format!("({}, {}) µm", um_digits(x), um_digits(y))
 }
 
-fn um_digits(nm: i64) -> String {
+/// A length in nm as µm without the unit.
+pub(super) fn um_digits(nm: i64) -> String {
     let sign = if nm < 0 { "-" } else { "" };
     let (whole, rest) = (nm.unsigned_abs() / 1000, nm.unsigned_abs() % 1000);
     let fraction = format!(".{rest:03}");

@@ -218,13 +218,14 @@ mod arrangement {
     use crate::layout::merge;
     use crate::layout::outline;
     use crate::layout::snap::snap;
+    use std::collections::BTreeSet;
 
     /// The audited layout of outlines that are clean by themselves.
     pub(super) fn pieces_of<const N: usize>(rings: &[(Owner, [Point; N])], snap_nm: i64) -> Layout {
         let grid = Grid { snap: snap_nm };
         let on_grid = |ring: &[Point]| ring.iter().map(|corner| grid.cell(*corner)).collect::<Vec<_>>();
         let rings = rings.iter().map(|(owner, ring)| (*owner, outline::ring(&on_grid(ring)).unwrap())).collect();
-        let edges = edges(&snap(&Outlines { grid, rings }.segments()));
+        let edges = edges(&snap(&Outlines { grid, rings, made: BTreeSet::new() }.segments()));
         let layout = merge::layout(&Subdivision::new(edges).0.merged(), grid);
         audit(&layout);
         layout

@@ -79,9 +79,19 @@ impl Table {
         }
     }
 
+    /// One corner, in whole nanometres.
+    pub fn corner(&self, key: &str) -> Option<(Length, Length)> {
+        corner_of(self.node(key)?, key)
+    }
+
     /// The corners of an outline, in whole nanometres.
     pub fn outline(&self, key: &str) -> Option<Vec<(Length, Length)>> {
-        self.node(key)?.list()?.iter().map(|corner| corner_of(corner, key)).collect()
+        outline_of(self.node(key)?, key)
+    }
+
+    /// The corners of each outline of a list, with the place of each.
+    pub fn outlines(&self, key: &str) -> Vec<(Vec<(Length, Length)>, &Place)> {
+        self.list(key).iter().filter_map(|node| Some((outline_of(node, key)?, &node.place))).collect()
     }
 
     /// A filling factor.
@@ -114,6 +124,10 @@ impl Table {
             .filter_map(|node| if let Value::Table(table) = &node.value { Some(table) } else { None })
             .collect()
     }
+}
+
+fn outline_of(node: &Node, key: &str) -> Option<Vec<(Length, Length)>> {
+    node.list()?.iter().map(|corner| corner_of(corner, key)).collect()
 }
 
 fn corner_of(node: &Node, key: &str) -> Option<(Length, Length)> {

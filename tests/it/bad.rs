@@ -6,7 +6,9 @@
 use std::path::Path;
 
 use edgesheet::diagnostic::Diagnostic;
+use edgesheet::diagnostic::Faults;
 use edgesheet::diagnostic::Severity;
+use edgesheet::diagnostic::Source;
 
 use crate::good::DEVICE;
 
@@ -48,9 +50,22 @@ fn findings(name: &str, bytes: &[u8]) -> Vec<Diagnostic> {
         let device = edgesheet::device::from_bytes("bar.toml", DEVICE).unwrap().value;
         edgesheet::cooldown::from_bytes(name, bytes, &device).err()
     } else {
-        edgesheet::device::from_bytes(name, bytes).err()
+        device_faults(name, bytes)
     };
     faults.unwrap_or_else(|| panic!("{name} was accepted")).0
+}
+
+/// What is wrong with the text of a device file and with what can be drawn of it.
+fn device_faults(name: &str, bytes: &[u8]) -> Option<Faults> {
+    match edgesheet::device::from_bytes(name, bytes) {
+        Ok(noted) => edgesheet::layout::layout(&noted.value).err(),
+        Err(Faults(mut found)) => {
+            let drawing =
+                std::str::from_utf8(bytes).ok().and_then(|text| edgesheet::device::drawing(&Source::new(name, text)));
+            found.extend(drawing.iter().flat_map(edgesheet::layout::faults));
+            Some(Faults(found))
+        }
+    }
 }
 
 /// What is wrong with the findings of one file, in words.

@@ -29,7 +29,7 @@ fn the_bar_is_read_whole() {
     let device = device();
     assert_eq!((device.id.as_str(), &device.ladder), ("KR-0417", &Ladder::SpinSplit));
     assert_eq!((device.layer.density_per_m2, device.layer.mobility_m2_per_vs), (Some(3.0e15), Some(95.0)));
-    let MesaShape::Bar { length, width } = device.mesa.shape;
+    let MesaShape::Bar { length, width } = device.mesa.shape else { panic!("a bar") };
     assert_eq!((length, width, device.mesa.snap), (Nanometres(600_000), Nanometres(100_000), Nanometres(10)));
     assert_eq!(device.contacts.iter().map(|contact| contact.name.as_str()).collect::<String>(), "123456");
     assert_eq!(device.contacts[0].pin.as_deref(), Some("A3"));

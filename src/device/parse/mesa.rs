@@ -7,6 +7,8 @@ use crate::syntax::Table;
 
 use crate::device::Mesa;
 use crate::device::MesaShape;
+use crate::device::Outline;
+use crate::device::parse::contact::to_corners;
 
 /// The default pixel of the arrangement, about a magnetic length.
 const SNAP_NM: i64 = 10;
@@ -24,14 +26,45 @@ pub(super) fn read(root: &Table, findings: &mut Findings) -> Option<Mesa> {
     let shape = table.text("shape")?;
     findings.extend(missing_keys(table, &shape));
     findings.extend(foreign_keys(table, &shape));
-    if shape != "bar" {
-        findings.push(not_laid_out(table, &shape));
-        return None;
-    }
+    let shape = match shape.as_str() {
+        "bar" => bar(table),
+        "cross" => cross(table),
+        "ring" => ring(table, findings),
+        _ => outline(table),
+    };
+    let snap = Nanometres(table.length("snap_nm").unwrap_or(SNAP_NM));
+    Some(Mesa { shape: shape?, snap, place: table.place.clone() })
+}
+
+fn bar(table: &Table) -> Option<MesaShape> {
     let length = Nanometres(table.length("length_um")?);
     let width = Nanometres(table.length("width_um")?);
-    let snap = Nanometres(table.length("snap_nm").unwrap_or(SNAP_NM));
-    Some(Mesa { shape: MesaShape::Bar { length, width }, snap, place: table.place.clone() })
+    Some(MesaShape::Bar { length, width })
+}
+
+fn cross(table: &Table) -> Option<MesaShape> {
+    let arm_length = Nanometres(table.length("arm_length_um")?);
+    let arm_width = Nanometres(table.length("arm_width_um")?);
+    Some(MesaShape::Cross { arm_length, arm_width })
+}
+
+fn ring(table: &Table, findings: &mut Findings) -> Option<MesaShape> {
+    let outer_diameter = Nanometres(table.length("outer_diameter_um")?);
+    let inner_diameter = Nanometres(table.length("inner_diameter_um")?);
+    if inner_diameter.0 >= outer_diameter.0 {
+        let fault = Diagnostic::fault("ring-size", "`inner_diameter_um` is not below `outer_diameter_um`");
+        findings.push(fault.at(table.place_of("inner_diameter_um")).hint("exchange or correct the two diameters"));
+        return None;
+    }
+    Some(MesaShape::Ring { outer_diameter, inner_diameter })
+}
+
+fn outline(table: &Table) -> Option<MesaShape> {
+    let place = table.place_of("outline_um").clone();
+    let outline = Outline { corners: to_corners(table.outline("outline_um")?), place };
+    let cutouts = table.outlines("cutouts_um").into_iter();
+    let cutouts = cutouts.map(|(corners, place)| Outline { corners: to_corners(corners), place: place.clone() });
+    Some(MesaShape::Outline { outline, cutouts: cutouts.collect() })
 }
 
 fn missing_keys(table: &Table, shape: &str) -> Vec<Diagnostic> {
@@ -57,10 +90,4 @@ fn foreign_keys(table: &Table, shape: &str) -> Vec<Diagnostic> {
             .hint(format!("take it out, or write `shape = \"{owner}\"`"))
     };
     present.map(fault).collect()
-}
-
-fn not_laid_out(table: &Table, shape: &str) -> Diagnostic {
-    Diagnostic::fault("not-computed-yet", format!("a mesa of shape {shape} is not laid out yet"))
-        .at(table.place_of("shape"))
-        .hint("`shape = \"bar\"` is laid out, with contacts on arms or of any outline, and gates of any outline")
 }

@@ -7,6 +7,7 @@ mod identity;
 mod mesa;
 mod mixing;
 mod overlay;
+mod placement;
 mod point;
 mod reading;
 mod transmission;
@@ -22,9 +23,16 @@ use crate::syntax::Checked;
 use crate::syntax::Table;
 use crate::syntax::keys::DEVICE_FILE;
 
+use crate::device::Contact;
 use crate::device::Device;
+use crate::device::EdgeRules;
 use crate::device::Ladder;
+use crate::device::Layer;
+use crate::device::Mesa;
+use crate::device::NamedReading;
 use crate::device::Names;
+use crate::device::OperatingPoint;
+use crate::device::Overlay;
 
 /// Reads the bytes of a device file known to the user as `name`. Faults: all of [`from_source`], and bytes that are not UTF-8.
 pub fn from_bytes(name: &str, bytes: &[u8]) -> Outcome<Device> {
@@ -42,6 +50,29 @@ pub fn from_source(source: &Arc<Source>) -> Outcome<Device> {
     }
 }
 
+/// What can be drawn of a device file that has faults: its mesa with the contacts, gates and steps that could be read, so
+/// that faults of the drawing are told together with those of the text. Points are there only where all gates and steps
+/// are, whose indices they hold; none where nothing can be drawn.
+pub fn drawing(source: &Arc<Source>) -> Option<Device> {
+    let Checked { root, whole, .. } = syntax::read(source, &DEVICE_FILE).ok()?;
+    let parts = whole.then(|| Parts::read(&root, &mut Findings::default()))?;
+    let contacts: Vec<Contact> = parts.contacts.into_iter().flatten().collect();
+    let all = parts.overlays.iter().all(Option::is_some);
+    Some(Device {
+        id: String::new(),
+        title: String::new(),
+        material: String::new(),
+        layer: parts.layer,
+        mesa: parts.mesa?,
+        edge: parts.edge,
+        contacts,
+        overlays: parts.overlays.into_iter().flatten().collect(),
+        points: parts.points.filter(|_| all).unwrap_or_default(),
+        readings: Vec::new(),
+        ladder: parts.ladder,
+    })
+}
+
 /// What the rules for points, contacts and readings look up.
 struct Scope<'a> {
     ladder: &'a Ladder,
@@ -50,29 +81,47 @@ struct Scope<'a> {
     gates: usize,
 }
 
+/// All tables, each read by itself.
+struct Parts {
+    ladder: Ladder,
+    layer: Layer,
+    mesa: Option<Mesa>,
+    edge: EdgeRules,
+    contacts: Vec<Option<Contact>>,
+    overlays: Vec<Option<Overlay>>,
+    points: Option<Vec<OperatingPoint>>,
+    readings: Option<Vec<NamedReading>>,
+}
+
+impl Parts {
+    fn read(root: &Table, findings: &mut Findings) -> Self {
+        let ladder = identity::ladder(root);
+        let mesa = mesa::read(root, findings);
+        let edge = mixing::edge(root, findings);
+        let overlays = overlay::read(root, findings);
+        let scope = scope(root, &ladder);
+        let points = point::read(root, &scope, findings);
+        let contacts = contact::read(root, points.as_deref().map(|points| (points, &ladder)), findings);
+        let readings = reading::read(root, &scope, findings);
+        Self { layer: identity::layer(root), mesa, edge, contacts, overlays, points, readings, ladder }
+    }
+}
+
 fn device(root: &Table, findings: &mut Findings) -> Option<Device> {
     let identity = identity::read(root);
-    let ladder = identity::ladder(root);
-    let mesa = mesa::read(root, findings);
-    let edge = mixing::edge(root, findings);
-    let overlays = overlay::read(root, findings);
-    let scope = scope(root, &ladder);
-    let points = point::read(root, &scope, findings);
-    let contacts = contact::read(root, points.as_deref().map(|points| (points, &ladder)), findings);
-    let readings = reading::read(root, &scope, findings);
-    let layer = identity::layer(root);
+    let parts = Parts::read(root, findings);
     let device = Device {
         id: identity.id,
         title: identity.title,
         material: identity.material,
-        layer,
-        mesa: mesa?,
-        edge,
-        contacts: contacts?,
-        overlays: overlays?,
-        points: points?,
-        readings: readings?,
-        ladder,
+        layer: parts.layer,
+        mesa: parts.mesa?,
+        edge: parts.edge,
+        contacts: parts.contacts.into_iter().collect::<Option<_>>()?,
+        overlays: parts.overlays.into_iter().collect::<Option<_>>()?,
+        points: parts.points?,
+        readings: parts.readings?,
+        ladder: parts.ladder,
     };
     density::compare(&device, findings);
     Some(device)

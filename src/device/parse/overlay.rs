@@ -13,17 +13,15 @@ use crate::device::names::doubled;
 use crate::device::parse::contact::to_corners;
 use crate::device::parse::mixing;
 
-/// All gates, then all steps.
-pub(super) fn read(root: &Table, findings: &mut Findings) -> Option<Vec<Overlay>> {
+/// All gates, then all steps, none in place of one that could not be read.
+pub(super) fn read(root: &Table, findings: &mut Findings) -> Vec<Option<Overlay>> {
     let gates = root.tables("gate");
     let steps = root.tables("step");
     let all: Vec<&Table> = gates.iter().chain(&steps).copied().collect();
     findings.extend(doubled("gate or step", "name", &all));
     findings.extend(all.iter().filter_map(|table| name_with_a_meaning(table)));
     let kinds = gates.iter().map(|_| OverlayKind::Gate).chain(steps.iter().map(|_| OverlayKind::Step));
-    let overlays: Vec<Option<Overlay>> =
-        all.iter().zip(kinds).map(|(table, kind)| overlay(table, kind, findings)).collect();
-    overlays.into_iter().collect()
+    all.iter().zip(kinds).map(|(table, kind)| overlay(table, kind, findings)).collect()
 }
 
 /// `+` joins names in `fillings`, and `bulk` is the ungated mesa in every closed form.
@@ -82,7 +80,7 @@ fn missing_border(table: &Table) -> Option<Diagnostic> {
         [one] => format!("{what} has no `{one}`"),
         _ => format!("{what} has neither `from_um` and `to_um` nor `outline_um`"),
     };
-    let hint = "a strip across the bar has `from_um` and `to_um`, any other shape `outline_um`";
+    let hint = "a strip across the mesa has `from_um` and `to_um`, any other shape `outline_um`";
     Some(Diagnostic::fault("missing-key", message).at(&table.place).hint(hint))
 }
 

@@ -57,12 +57,20 @@ static MESA: TableSpec = TableSpec {
         Key::new("shape", Kind::Word(&["bar", "cross", "ring", "outline"]), "bar, cross, ring or outline").required(),
         Key::new("length_um", Kind::Length(Range::Positive), "bar: extent along x, from 0 at the left end"),
         Key::new("width_um", Kind::Length(Range::Positive), "bar: extent along y, from 0 at the lower edge"),
-        Key::new("arm_length_um", Kind::Length(Range::Positive), "cross: length of an arm"),
-        Key::new("arm_width_um", Kind::Length(Range::Positive), "cross: width of an arm"),
-        Key::new("outer_diameter_um", Kind::Length(Range::Positive), "ring: outer diameter"),
-        Key::new("inner_diameter_um", Kind::Length(Range::Positive), "ring: inner diameter"),
-        Key::new("outline_um", Kind::Outline, "outline: corners [x, y] in order"),
-        Key::new("cutouts_um", Kind::Outlines, "outline: openings in the mesa"),
+        Key::new(
+            "arm_length_um",
+            Kind::Length(Range::Positive),
+            "cross: length of each arm, from the square in the middle; x and y from 0 at the ends of the left and lower arm",
+        ),
+        Key::new("arm_width_um", Kind::Length(Range::Positive), "cross: width of each arm"),
+        Key::new(
+            "outer_diameter_um",
+            Kind::Length(Range::Positive),
+            "ring: outer diameter; x and y from 0 in the centre",
+        ),
+        Key::new("inner_diameter_um", Kind::Length(Range::Positive), "ring: diameter of the opening"),
+        Key::new("outline_um", Kind::Outline, "outline: corners [x, y] in order, in either sense"),
+        Key::new("cutouts_um", Kind::Outlines, "outline: openings in the mesa, each as its corners in order"),
         Key::new("snap_nm", Kind::Length(Range::Positive), "corners and edges nearer than this are one").default("10"),
     ],
 };
@@ -83,14 +91,27 @@ static CONTACT: TableSpec = TableSpec {
     name: "contact",
     keys: &[
         Key::new("name", Kind::Name, "name of the contact").required(),
-        Key::new("edge", Kind::Word(&["left", "top", "right", "bottom", "outer", "inner"]), "edge it sits on"),
+        Key::new(
+            "edge",
+            Kind::Word(&["left", "top", "right", "bottom", "outer", "inner"]),
+            "edge it sits on: left, top, right, bottom of a bar or cross; outer, inner of a ring",
+        ),
         Key::new("x_um", Kind::Length(Range::Any), "its centre along the top or bottom edge"),
         Key::new("y_um", Kind::Length(Range::Any), "its centre along the left or right edge"),
-        Key::new("width_um", Kind::Length(Range::Positive), "its width along the edge"),
-        Key::new("arm_um", Kind::Length(Range::NotNegative), "length of the arm that carries it").default("0"),
-        Key::new("outline_um", Kind::Outline, "any shape in place of an edge: corners [x, y] in order"),
-        Key::new("at_um", Kind::Corner, "a place on the rim of a mesa with an outline"),
-        Key::new("angle_deg", Kind::Number(Range::Any), "a place on the rim of a ring"),
+        Key::new(
+            "width_um",
+            Kind::Length(Range::Positive),
+            "its width along the edge or rim, round corners of the rim too",
+        ),
+        Key::new("arm_um", Kind::Length(Range::NotNegative), "bar and cross: length of the arm that carries it")
+            .default("0"),
+        Key::new("outline_um", Kind::Outline, "any shape anywhere: corners [x, y] in order"),
+        Key::new("at_um", Kind::Corner, "outline: the point of a rim, outer or of a cut-out, where its middle sits"),
+        Key::new(
+            "angle_deg",
+            Kind::Number(Range::Any),
+            "ring: direction of its middle from the centre, anticlockwise from the x axis",
+        ),
         Key::new("pin", Kind::Name, "carrier pin"),
         Key::new("pad", Kind::Text, "chip pad"),
         Key::new("note", Kind::Text, "free text"),
@@ -100,8 +121,12 @@ static CONTACT: TableSpec = TableSpec {
 
 /// Keys that gates and steps share.
 const OVERLAY_NAME: Key = Key::new("name", Kind::Name, "name, as `fillings` has it").required();
-const OVERLAY_FROM: Key = Key::new("from_um", Kind::Length(Range::Any), "left border of a strip across the bar");
-const OVERLAY_TO: Key = Key::new("to_um", Kind::Length(Range::Any), "right border of a strip across the bar");
+const OVERLAY_FROM: Key = Key::new(
+    "from_um",
+    Kind::Length(Range::Any),
+    "left border of a strip across the whole mesa, from its lowest to its highest y",
+);
+const OVERLAY_TO: Key = Key::new("to_um", Kind::Length(Range::Any), "right border of a strip across the whole mesa");
 const OVERLAY_OUTLINE: Key = Key::new("outline_um", Kind::Outline, "any shape in place of a strip: corners [x, y]");
 const OVERLAY_MIXING: Key = Key::new("mixing", Kind::Mixing, "mixing along its own borders");
 

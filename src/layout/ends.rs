@@ -1,4 +1,5 @@
-//! Contacts on the edges of a bar: which stretch of an edge they take, and the rules for stretches.
+//! Contacts on the straight edges of a bar and on the ends of a cross: which stretch of an edge they take, and the rules
+//! for stretches.
 
 use crate::device::Contact;
 use crate::device::ContactIdx;
@@ -12,14 +13,17 @@ use crate::diagnostic::Findings;
 use crate::layout::Point;
 use crate::layout::grid::FARTHEST;
 use crate::layout::owner::um;
+use crate::layout::owner::um_digits;
 
-/// Extent of a bar in nm.
+/// The four straight edges of a bar or a cross, in nm.
 #[derive(Clone, Copy, Debug)]
-pub(super) struct Bar {
-    /// Along x.
-    pub(super) length: i64,
-    /// Along y.
-    pub(super) width: i64,
+pub(super) struct Ends {
+    /// Lower left and upper right corner of the rectangle round the mesa; the edges lie on its sides.
+    pub(super) extent: (Point, Point),
+    /// From where to where the top and bottom edges reach.
+    pub(super) along_x: (i64, i64),
+    /// From where to where the left and right edges reach.
+    pub(super) along_y: (i64, i64),
 }
 
 /// The stretch of an edge that a contact takes, in nm along the edge, and the length of its arm.
@@ -35,33 +39,34 @@ pub(super) struct Stretch {
     pub(super) arm: i64,
 }
 
-impl Bar {
+impl Ends {
     /// The rectangle beside an edge between two distances outward from it.
     pub(super) fn beside(self, stretch: Stretch, from: i64, to: i64) -> [Point; 4] {
         let Stretch { edge, low, high, .. } = stretch;
+        let (lower, upper) = self.extent;
         match edge {
-            Edge::Left => rectangle((-to, low), (-from, high)),
-            Edge::Right => rectangle((self.length + from, low), (self.length + to, high)),
-            Edge::Top => rectangle((low, self.width + from), (high, self.width + to)),
-            Edge::Bottom => rectangle((low, -to), (high, -from)),
+            Edge::Left => rectangle((lower.0 - to, low), (lower.0 - from, high)),
+            Edge::Right => rectangle((upper.0 + from, low), (upper.0 + to, high)),
+            Edge::Top => rectangle((low, upper.1 + from), (high, upper.1 + to)),
+            Edge::Bottom => rectangle((low, lower.1 - to), (high, lower.1 - from)),
         }
     }
 
-    /// The part of the bar between two x, and of the arms beyond it where their lengths (left, right, top, bottom) are
-    /// given.
-    pub(super) fn across(self, (low, high): (i64, i64), arms: Option<[i64; 4]>) -> [Point; 4] {
-        let [left, right, top, bottom] = arms.unwrap_or([0; 4]);
-        let low = if low == 0 { -left } else { low };
-        let high = if high == self.length { high + right } else { high };
-        rectangle((low, -bottom), (high, self.width + top))
-    }
-
-    fn extent(self, edge: Edge) -> i64 {
+    fn along(self, edge: Edge) -> (i64, i64) {
         match edge {
-            Edge::Left | Edge::Right => self.width,
-            Edge::Top | Edge::Bottom => self.length,
+            Edge::Left | Edge::Right => self.along_y,
+            Edge::Top | Edge::Bottom => self.along_x,
         }
     }
+}
+
+/// The part of a mesa between two x, from its lowest to its highest y, and of the arms beyond it where their lengths
+/// (left, right, top, bottom) are given.
+pub(super) fn across((lower, upper): (Point, Point), (low, high): (i64, i64), arms: [i64; 4]) -> [Point; 4] {
+    let [left, right, top, bottom] = arms;
+    let low = if low == lower.0 { low - left } else { low };
+    let high = if high == upper.0 { high + right } else { high };
+    rectangle((low, lower.1 - bottom), (high, upper.1 + top))
 }
 
 /// The longest arm on the left, right, top and bottom edge.
@@ -78,17 +83,20 @@ pub(super) fn rectangle(low: Point, high: Point) -> [Point; 4] {
 }
 
 /// The stretch of a contact on an edge; none for an outline, or with a finding where the stretch is not on the edge.
-pub(super) fn stretch(bar: Bar, contact: &Contact, findings: &mut Findings) -> Option<Stretch> {
+pub(super) fn stretch(ends: Ends, contact: &Contact, findings: &mut Findings) -> Option<Stretch> {
     let ContactShape::Edge { edge, centre, width, arm } = &contact.shape else { return None };
-    let extent = bar.extent(*edge);
+    let (start, end) = ends.along(*edge);
     let given = [centre.map(|l| l.0), width.map(|l| l.0), Some(arm.0)];
     let (low, high) = match (centre, width) {
         _ if given.into_iter().flatten().any(|nm| nm.saturating_abs() > FARTHEST.0) => {
             findings.push(too_far(&format!("contact \"{}\"", contact.name)).at(&contact.place));
             return None;
         }
-        (None, None) => (0, extent),
-        (None, Some(width)) => ((extent - width.0).div_euclid(2), (extent - width.0).div_euclid(2) + width.0),
+        (None, None) => (start, end),
+        (None, Some(width)) => {
+            let low = (start + end - width.0).div_euclid(2);
+            (low, low + width.0)
+        }
         (Some(centre), Some(width)) => {
             let low = (2 * centre.0 - width.0).div_euclid(2);
             (low, low + width.0)
@@ -100,7 +108,7 @@ pub(super) fn stretch(bar: Bar, contact: &Contact, findings: &mut Findings) -> O
         }
     };
     let stretch = Stretch { edge: *edge, low, high, arm: arm.0 };
-    let wrong = misplaced(contact, stretch, extent);
+    let wrong = misplaced(contact, stretch, (start, end));
     let fine = wrong.is_none();
     findings.extend(wrong);
     fine.then_some(stretch)
@@ -112,7 +120,7 @@ pub(super) fn too_far(what: &str) -> Diagnostic {
     Diagnostic::fault("too-far", message).hint("lengths are given in micrometres; check the unit")
 }
 
-fn misplaced(contact: &Contact, stretch: Stretch, extent: i64) -> Option<Diagnostic> {
+fn misplaced(contact: &Contact, stretch: Stretch, (start, end): (i64, i64)) -> Option<Diagnostic> {
     let Stretch { edge, low, high, arm } = stretch;
     let (name, edge_name) = (&contact.name, edge_words(edge));
     let fault = |code, message: String| Some(Diagnostic::fault(code, message).at(&contact.place));
@@ -120,19 +128,23 @@ fn misplaced(contact: &Contact, stretch: Stretch, extent: i64) -> Option<Diagnos
         let message = format!("contact \"{name}\" has a width or an arm that is not a length");
         return fault("contact-width", message).map(|d| d.hint("width_um must be above 0, arm_um at least 0"));
     }
-    if high <= 0 || low >= extent {
+    if high <= start || low >= end {
         let message = format!(
-            "contact \"{name}\" is not on the {edge_name} edge, which runs from 0 to {}: it would reach from {} to {}",
-            um(extent),
+            "contact \"{name}\" is not on the {edge_name} edge, which runs from {} to {}: it would reach from {} to {}",
+            um_digits(start),
+            um(end),
             um(low),
             um(high)
         );
         return fault("contact-off-mesa", message).map(|d| d.hint("correct its centre, or choose another edge"));
     }
-    if low < 0 || high > extent {
-        let (end, limit) = if low < 0 { (low, 0) } else { (high, extent) };
-        let message =
-            format!("contact \"{name}\" reaches to {} on the {edge_name} edge, which ends at {}", um(end), um(limit));
+    if low < start || high > end {
+        let (reached, limit) = if low < start { (low, start) } else { (high, end) };
+        let message = format!(
+            "contact \"{name}\" reaches to {} on the {edge_name} edge, which ends at {}",
+            um(reached),
+            um(limit)
+        );
         return fault("contact-beyond-edge", message).map(|d| d.hint("move its centre inward or make it narrower"));
     }
     None
@@ -187,17 +199,17 @@ fn meeting(device: &Device, pair: (ContactIdx, ContactIdx), kind: MeetingKind) -
 fn edge_of(contact: &Contact) -> &'static str {
     match &contact.shape {
         ContactShape::Edge { edge, .. } => edge_words(*edge),
-        ContactShape::Outline(_) => "same",
+        _ => "same",
     }
 }
 
-/// A gate across the bar covers the body of the bar and never an arm; where an arm begins under one, that is said.
-pub(super) fn arms_under_overlays(device: &Device, bar: Bar, stretches: &[(ContactIdx, Stretch)]) -> Vec<Diagnostic> {
+/// A gate across the mesa covers its body and never the arm of a contact; where an arm begins under one, that is said.
+pub(super) fn arms_under_overlays(device: &Device, ends: Ends, stretches: &[(ContactIdx, Stretch)]) -> Vec<Diagnostic> {
     let mut notices = Vec::new();
     for (contact, stretch) in stretches.iter().filter(|(_, stretch)| stretch.arm > 0) {
         let (low, high) = match stretch.edge {
-            Edge::Left => (0, 1),
-            Edge::Right => (bar.length - 1, bar.length),
+            Edge::Left => (ends.extent.0.0, ends.extent.0.0 + 1),
+            Edge::Right => (ends.extent.1.0 - 1, ends.extent.1.0),
             Edge::Top | Edge::Bottom => (stretch.low, stretch.high),
         };
         for overlay in &device.overlays {
