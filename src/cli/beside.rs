@@ -4,13 +4,13 @@ use std::path::Path;
 use std::path::PathBuf;
 use std::sync::Arc;
 
+use crate::cli::load;
 use crate::cli::opened::Kind;
 use crate::cli::opened::Opened;
 use crate::cli::opened::open_neighbours;
 use crate::cooldown;
 use crate::cooldown::Cooldown;
 use crate::cooldown::Names;
-use crate::device;
 use crate::device::Device;
 use crate::diagnostic::Findings;
 use crate::diagnostic::Source;
@@ -60,7 +60,7 @@ struct Desk<'a> {
 fn known(file: &Opened, findings: &mut Findings) -> Option<Known> {
     let source = file.device()?;
     let id = syntax::text_at(source, &["device", "id"]);
-    let device = findings.take(device::from_source(source));
+    let device = load::device_of(source, findings);
     let layout = device.as_ref().and_then(|device| findings.take(layout::layout(device)));
     let rims = layout.zip(device.as_ref()).map(|(layout, device)| {
         let network = network::network(&layout, device.contacts.len());

@@ -63,7 +63,7 @@ pub fn load(device: &Path, cooldown: Option<&Path>) -> Result<Loaded, Failure> {
 }
 
 /// The device; where its file has faults, those of what can be drawn of it are told as well.
-fn device_of(text: &Arc<Source>, findings: &mut Findings) -> Option<Device> {
+pub fn device_of(text: &Arc<Source>, findings: &mut Findings) -> Option<Device> {
     let device = findings.take(crate::device::from_source(text));
     let drawing = if device.is_none() { crate::device::drawing(text) } else { None };
     findings.extend(drawing.iter().flat_map(crate::layout::faults));

@@ -35,7 +35,7 @@ fn a_device_is_told_in_words() {
             "2  top edge, x 140 to 160 µm, on an arm of 40 µm",
             "pin A5",
             "clockwise: 1, 2, 3, 4, 5, 6",
-            "TG  x 250 to 350 µm, across the bar  −0.8 to 0.2 V",
+            "TG  x 250 to 350 µm, across the mesa  −0.8 to 0.2 V",
             "3 over 1  4.14 T  filling 3 with 1 under TG; TG at −0.333 V",
             "no fault",
         ],

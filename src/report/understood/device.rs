@@ -1,5 +1,6 @@
 //! What is understood of a device file.
 
+use crate::device::Circle;
 use crate::device::Contact;
 use crate::device::ContactIdx;
 use crate::device::ContactShape;
@@ -55,6 +56,21 @@ fn mesa(shape: &MesaShape) -> String {
         MesaShape::Bar { length, width } => {
             format!("bar, {} × {} µm: x from 0 at the left end, y from 0 at the lower edge", um(*length), um(*width))
         }
+        MesaShape::Cross { arm_length, arm_width } => format!(
+            "cross, arms {} µm long and {} µm wide: x and y from 0 at the ends of the left and the lower arm",
+            um(*arm_length),
+            um(*arm_width)
+        ),
+        MesaShape::Ring { outer_diameter, inner_diameter } => format!(
+            "ring, diameters {} µm and {} µm: x and y from 0 in the centre",
+            um(*outer_diameter),
+            um(*inner_diameter)
+        ),
+        MesaShape::Outline { outline: rim, cutouts } => {
+            let openings: String =
+                cutouts.iter().map(|cutout| format!("; cut-out: {}", outline(&cutout.corners))).collect();
+            format!("{}{openings}", outline(&rim.corners))
+        }
     }
 }
 
@@ -91,6 +107,16 @@ fn contact_place(shape: &ContactShape) -> String {
             let arm = if arm.0 == 0 { String::new() } else { format!(", on an arm of {} µm", um(*arm)) };
             format!("{edge}, {stretch}{arm}")
         }
+        ContactShape::Round { circle, arc } => {
+            let rim = if *circle == Circle::Outer { "outer rim" } else { "inner rim" };
+            match arc {
+                Some(arc) => format!("{rim}, {} µm wide at {}°", um(arc.width), as_given(arc.angle_deg)),
+                None => format!("{rim}, whole"),
+            }
+        }
+        ContactShape::Rim { at: (x, y), width } => {
+            format!("rim, {} µm wide at ({}, {}) µm", um(*width), um(*x), um(*y))
+        }
         ContactShape::Outline(corners) => outline(corners),
     }
 }
@@ -115,15 +141,17 @@ fn outline(corners: &[Corner]) -> String {
 fn rim_lines(device: &Device, rims: &[Vec<ContactIdx>]) -> Vec<String> {
     let line = |(at, rim): (usize, &Vec<ContactIdx>)| {
         let contacts: Vec<&str> = rim.iter().map(|contact| names::contact_name(device, *contact)).collect();
-        let which = if rims.len() == 1 { String::new() } else { format!("rim {}, ", at + 1) };
-        format!("{which}clockwise: {}", contacts.join(", "))
+        // Round an opening the mesa lies on the other side: there the same order runs anticlockwise.
+        let order =
+            if rims.len() == 1 { "clockwise".to_owned() } else { format!("rim {}, the mesa on the right", at + 1) };
+        format!("{order}: {}", contacts.join(", "))
     };
     rims.iter().enumerate().map(line).collect()
 }
 
 fn overlay_row(overlay: &Overlay) -> Vec<String> {
     let place = match &overlay.shape {
-        OverlayShape::Across { from, to } => format!("x {} to {} µm, across the bar", um(*from), um(*to)),
+        OverlayShape::Across { from, to } => format!("x {} to {} µm, across the mesa", um(*from), um(*to)),
         OverlayShape::Outline(corners) => outline(corners),
     };
     let limits = overlay.limits_v.map(|(low, high)| format!("{} to {} V", as_given(low), as_given(high)));
