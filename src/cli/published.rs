@@ -17,6 +17,7 @@ use crate::report::RowSource;
 use crate::report::SolvedPoint;
 use crate::report::Sources;
 use crate::sheet;
+use crate::sheet::Pages;
 use crate::sheet::Paper;
 
 /// Greatest height of a drawing on the sheet, in mm.
@@ -93,7 +94,7 @@ impl<'a> Published<'a> {
     }
 
     /// The pages.
-    pub fn pages(&self, report: &Report, paper: PaperSize) -> Vec<Scene> {
+    pub fn pages(&self, report: &Report, paper: PaperSize) -> Pages {
         let paper = match paper {
             PaperSize::A4 => Paper::A4,
             PaperSize::Letter => Paper::Letter,
@@ -102,7 +103,7 @@ impl<'a> Published<'a> {
     }
 
     /// The PDF of the pages with the inputs and the record attached.
-    pub fn pdf(&self, report: &Report, record: &[u8], pages: Vec<Scene>) -> Vec<u8> {
+    pub fn pdf(&self, report: &Report, record: &[u8], pages: Pages) -> Vec<u8> {
         let inputs: Vec<(&str, &[u8])> =
             self.loaded.inputs.iter().map(|file| (file.name.as_str(), file.bytes.as_slice())).collect();
         let date = self.loaded.cooldown.as_ref().and_then(|cooldown| cooldown.date.clone());

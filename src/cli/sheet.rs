@@ -33,7 +33,7 @@ pub fn run(options: &SheetOptions) -> Result<Finished, Failure> {
     let html = published.html(&report).map_err(one_fault)?;
     let pages = published.pages(&report, options.paper);
     show::notices(&loaded.notices);
-    show::notices(crate::sheet::spelled(&pages).as_slice());
+    show::notices(crate::sheet::spelled(&pages.scenes).as_slice());
     let pdf = published.pdf(&report, &record, pages);
     let written = target.write(&[pdf, html.into_bytes(), record]).map_err(|fault| Failure::Write(fault, None))?;
     show::written(&report, &written)?;

@@ -43,7 +43,7 @@ fn ended(written: std::io::Result<()>) -> Result<Finished, Failure> {
 
 /// The verdict and the files written.
 pub fn written(report: &Report, paths: &[PathBuf]) -> Result<Finished, Failure> {
-    let mut lines = vec![crate::sheet::plain(&report.verdict.sentence)];
+    let mut lines = vec![crate::sheet::spoken(&report.verdict.sentence)];
     lines.extend(paths.iter().map(|path| format!("wrote {}", path.display())));
     text(&(lines.join("\n") + "\n"))
 }

@@ -12,6 +12,7 @@ mod spelling;
 
 pub use spelling::missing;
 pub use spelling::missing_in;
+pub use spelling::spoken;
 
 use std::sync::LazyLock;
 

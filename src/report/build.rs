@@ -40,7 +40,7 @@ pub fn build(sources: &Sources) -> Result<Report, Diagnostic> {
     Ok(Report {
         format: FORMAT,
         identity: identity::identity(sources),
-        verdict: verdict::verdict_box(sources, &texts)?,
+        verdict: verdict::verdict_box(sources, &points, &texts)?,
         answer_point: answer_point(&points),
         points,
         field_words: captions::field_words(sources, &texts)?,

@@ -149,6 +149,19 @@ pub struct VerdictBox {
     pub not_tested: Vec<String>,
     /// The limit in u beyond which a reading disagrees.
     pub limit: Option<Printed>,
+    /// Where the readings that disagree, and the one that is off most, stand in the tables; the worst first.
+    pub named: Vec<NamedReading>,
+}
+
+/// Where a reading stands.
+#[derive(Clone, Debug, PartialEq, Eq, Serialize)]
+pub struct NamedReading {
+    /// Its name.
+    pub name: String,
+    /// Index of its operating point.
+    pub point: usize,
+    /// Index of its row in the point's table.
+    pub row: usize,
 }
 
 /// One operating point at both polarities.

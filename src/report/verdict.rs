@@ -14,6 +14,8 @@ use crate::quantity::Polarity;
 use crate::quantity::Uncertain;
 use crate::quantity::printed;
 use crate::quantity::printed::as_given;
+use crate::report::NamedReading;
+use crate::report::PointReport;
 use crate::report::PointSource;
 use crate::report::Printed;
 use crate::report::Sources;
@@ -24,7 +26,7 @@ use crate::report::rows::is_judged;
 use crate::report::table::reading_of;
 
 /// The verdict of all points together.
-pub fn verdict_box(sources: &Sources, texts: &Texts) -> Result<VerdictBox, Diagnostic> {
+pub fn verdict_box(sources: &Sources, points: &[PointReport], texts: &Texts) -> Result<VerdictBox, Diagnostic> {
     let fields = Fields::of(sources);
     Ok(VerdictBox {
         result: result(sources.comparison),
@@ -34,7 +36,22 @@ pub fn verdict_box(sources: &Sources, texts: &Texts) -> Result<VerdictBox, Diagn
         with_care: texts.lines("with-care.txt", &fields)?,
         not_tested: texts.lines("not-tested.txt", &fields)?,
         limit: sources.comparison.and_then(|comparison| comparison.limit_u).map(|limit| Printed::number(limit, 1, "u")),
+        named: named(sources, points),
     })
+}
+
+/// Where the readings that the sentences may name stand: those that disagree, or the one that is off most.
+fn named(sources: &Sources, points: &[PointReport]) -> Vec<NamedReading> {
+    let rows: &[Row] = sources.comparison.map_or(&[], |comparison| &comparison.rows);
+    let judged = by_size(rows).into_iter().enumerate();
+    let told = judged.filter(|(rank, row)| *rank == 0 || row.judgement == Judgement::Disagrees);
+    let place = |(_, row): (usize, &Row)| {
+        let name = names::reading_name(sources.device, &reading_of(row));
+        let point = row.measured.point;
+        let row = points.get(point)?.rows.iter().position(|row| row.name == name)?;
+        Some(NamedReading { name, point, row })
+    };
+    told.filter_map(place).collect()
 }
 
 fn result(comparison: Option<&Comparison>) -> &'static str {

@@ -17,14 +17,20 @@ use crate::sheet::typeset;
 use crate::sheet::typeset::Style;
 
 /// Height of a chart.
-const HEIGHT_MM: f64 = 62.0;
+pub const HEIGHT_MM: f64 = 62.0;
+/// A chart is made lower where a page is filled by it, down to this: its marks still stand apart.
+pub const LEAST_HEIGHT_MM: f64 = 36.0;
 /// Width of the names of all readings together.
 const NAMES_MM: f64 = 140.0;
 
-/// One scene per chart of the point.
+/// One scene per chart of the point, at its usual height.
 pub fn scenes(point: &PointReport) -> Vec<Scene> {
-    let chart = |range: &[usize; 2]| draw_chart(&chart(point, *range));
-    point.charts.iter().filter_map(chart).collect()
+    (0..point.charts.len()).filter_map(|at| scene(point, at, HEIGHT_MM)).collect()
+}
+
+/// One chart of the point at a height in mm; none where it has no value to draw.
+pub fn scene(point: &PointReport, at: usize, height_mm: f64) -> Option<Scene> {
+    draw_chart(&chart(point, *point.charts.get(at)?, height_mm))
 }
 
 /// Whether places in the table stand for the names of readings: long ones would touch.
@@ -34,7 +40,7 @@ pub fn is_numbered(point: &PointReport) -> bool {
     point.charts.iter().any(|[_, count]| widest_mm + 1.5 > NAMES_MM / *count as f64)
 }
 
-fn chart(point: &PointReport, [first, count]: [usize; 2]) -> Chart {
+fn chart(point: &PointReport, [first, count]: [usize; 2], height_mm: f64) -> Chart {
     let rows = &point.rows[first..first + count];
     let numbered = is_numbered(point);
     let label = |row: &TableRow| match numbered {
@@ -42,7 +48,7 @@ fn chart(point: &PointReport, [first, count]: [usize; 2]) -> Chart {
         true => vec![Run { text: row.place.to_string(), level: Level::Normal }],
     };
     let reading = |row: &TableRow| ChartReading { label: label(row), sides: [side(&row.toward), side(&row.away)] };
-    Chart { readings: rows.iter().map(reading).collect(), levels: levels(rows), size_mm: (grid::TEXT_MM, HEIGHT_MM) }
+    Chart { readings: rows.iter().map(reading).collect(), levels: levels(rows), size_mm: (grid::TEXT_MM, height_mm) }
 }
 
 fn side(cell: &Cell) -> ChartSide {

@@ -9,13 +9,21 @@ use crate::sheet::grid::GUTTER_MM;
 use crate::sheet::grid::HALF_MM;
 use crate::sheet::grid::TEXT_MM;
 use crate::sheet::grid::THIRD_MM;
+use crate::sheet::guide::Target;
+use crate::sheet::guide::headed;
 use crate::sheet::typeset::Style;
 
 /// The closing begins under the last table only where this much is left.
 const BEGIN_MM: f64 = 70.0;
 
-/// Share of the space between paragraphs that is kept where a page is saved by it.
-const SQUEEZED: f64 = 0.5;
+/// Shares of the space between paragraphs, tried one after the other: where a page is saved by it, less is kept.
+const SQUEEZED: [f64; 5] = [1.0, 0.8, 0.65, 0.5, 0.35];
+
+/// Height of the sign-off.
+const SIGN_OFF_MM: f64 = 27.0;
+/// Space between the lines for remarks, and the least number of them.
+const REMARK_MM: f64 = 8.0;
+const LEAST_REMARKS: usize = 3;
 
 /// What the answer page left for the end.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -35,20 +43,38 @@ pub fn compose(book: &mut Book, leftover: Leftover) {
     }
     let mut lines = sections(report, leftover);
     provenance(&mut lines, report);
-    let mut wide = book.clone();
-    fill(&mut wide, &lines);
-    for line in &mut lines {
-        line.before_mm *= SQUEEZED;
-    }
-    let mut tight = book.clone();
-    fill(&mut tight, &lines);
     // A page less is worth less space between paragraphs.
-    *book = if tight.pages() < wide.pages() { tight } else { wide };
+    let filled = SQUEEZED.into_iter().map(|share| filled(book, &lines, share));
+    if let Some(best) = filled.reduce(|best, next| if next.pages() < best.pages() { next } else { best }) {
+        *book = best;
+    }
+    remarks(book);
+    sign_off(book);
 }
 
-fn fill(book: &mut Book, lines: &[Line]) {
-    two_columns(book, lines);
-    sign_off(book, book.report);
+/// The book with all lines and room for the sign-off.
+fn filled<'a>(book: &Book<'a>, lines: &[Line], share: f64) -> Book<'a> {
+    let squeezed = |line: &Line| Line { before_mm: line.before_mm * share, ..line.clone() };
+    let mut book = book.clone();
+    two_columns(&mut book, &lines.iter().map(squeezed).collect::<Vec<_>>());
+    book.turn_unless(SIGN_OFF_MM);
+    book
+}
+
+/// Lines to write on, over what is left of the last page above the sign-off.
+fn remarks(book: &mut Book) {
+    const HEADING_MM: f64 = 10.2;
+    let room_mm = book.page.left_mm() - SIGN_OFF_MM - HEADING_MM;
+    let count = (room_mm / REMARK_MM).max(0.0) as usize;
+    if count < LEAST_REMARKS {
+        return;
+    }
+    heading(book, &book.report.words.remarks);
+    let page = &mut book.page;
+    for _ in 0..count {
+        page.y_mm += REMARK_MM;
+        page.rule((page.paper.left_mm(), page.y_mm), TEXT_MM, grid::THIN_MM, grid::PALE);
+    }
 }
 
 fn sections(report: &Report, leftover: Leftover) -> Vec<Line> {
@@ -57,9 +83,9 @@ fn sections(report: &Report, leftover: Leftover) -> Vec<Line> {
     if leftover.columns_cut {
         let verdict = &report.verdict;
         section(&mut lines, &words.from_first_page, std::slice::from_ref(&verdict.sentence));
-        section(&mut lines, &words.usable, &verdict.usable);
-        section(&mut lines, &words.with_care, &verdict.with_care);
-        section(&mut lines, &words.not_tested, &verdict.not_tested);
+        below(&mut lines, &words.usable, &verdict.usable);
+        below(&mut lines, &words.with_care, &verdict.with_care);
+        below(&mut lines, &words.not_tested, &verdict.not_tested);
     }
     if leftover.field_left {
         section(&mut lines, &words.field, &report.field_words);
@@ -67,9 +93,15 @@ fn sections(report: &Report, leftover: Leftover) -> Vec<Line> {
     let tables = report.closure.iter().chain(&report.instruments).chain(&report.corrections).chain(&report.budgets);
     for (index, table) in tables.enumerate() {
         if index == report.closure.len() {
+            let start = lines.len();
             flow::title(&mut lines, &words.instruments, HALF_MM);
+            flow::part(&mut lines, start, (0, &words.instruments));
         }
+        let start = lines.len();
         flow::small_table(&mut lines, table, HALF_MM);
+        if !table.heading.is_empty() {
+            flow::part(&mut lines, start, (usize::from(index >= report.closure.len()), &table.heading));
+        }
     }
     section(&mut lines, &words.rules, &report.rules);
     section(&mut lines, &words.limits, &report.limits);
@@ -106,10 +138,19 @@ fn identity(report: &Report) -> Vec<String> {
 }
 
 fn section(lines: &mut Vec<Line>, heading: &str, paragraphs: &[String]) {
+    let start = lines.len();
     flow::heading(lines, heading, HALF_MM);
+    flow::part(lines, start, (0, heading));
     for text in paragraphs {
         paragraph(lines, text, Style::text(grid::SMALL_PT), 1.0);
     }
+}
+
+/// A section below the last one.
+fn below(lines: &mut Vec<Line>, heading: &str, paragraphs: &[String]) {
+    let start = lines.len();
+    section(lines, heading, paragraphs);
+    flow::part(lines, start, (1, heading));
 }
 
 fn paragraph(lines: &mut Vec<Line>, text: &str, style: Style, before_mm: f64) {
@@ -198,13 +239,16 @@ fn heading(book: &mut Book, heading: &str) {
     let page = &mut book.page;
     page.y_mm += 5.0;
     page.rule((page.paper.left_mm(), page.y_mm), TEXT_MM, grid::THIN_MM, grid::GREY);
+    page.anchor(headed(Target::Part(heading.to_owned()), 0, heading), page.y_mm);
     page.y_mm += 4.6;
     page.text((page.paper.left_mm(), page.y_mm), Style::bold(grid::TEXT_PT), heading);
     page.y_mm += 0.6;
 }
 
-fn sign_off(book: &mut Book, report: &Report) {
-    book.turn_unless(27.0);
+fn sign_off(book: &mut Book) {
+    let report = book.report;
+    // It stands at the foot of the last page.
+    book.page.y_mm += (book.page.left_mm() - SIGN_OFF_MM).max(0.0);
     heading(book, &report.words.sign_off);
     let page = &mut book.page;
     page.y_mm += 10.0;

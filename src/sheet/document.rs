@@ -6,17 +6,18 @@ use crate::diagnostic::Diagnostic;
 use crate::figure::fonts::missing_in;
 use crate::figure::scene::Scene;
 use crate::report::Report;
+use crate::sheet::compose::Pages;
 use crate::sheet::pdf::Attachment;
-use crate::sheet::pdf::Bookmark;
+use crate::sheet::pdf::PageLabel;
 use crate::sheet::pdf::PdfDocument;
 use crate::sheet::pdf::Relationship;
-use crate::sheet::typeset::plain;
+use crate::sheet::typeset::spoken;
 
 /// The document of a sheet. `inputs` are (name, bytes) in the order in which they were read; `record` is the record's
 /// bytes; `date` that of the cooldown, if it has one.
 pub fn document(
     report: &Report,
-    pages: Vec<Scene>,
+    pages: Pages,
     date: Option<String>,
     (inputs, record): (&[(&str, &[u8])], &[u8]),
 ) -> PdfDocument {
@@ -24,19 +25,24 @@ pub fn document(
     attachments.push(Attachment {
         name: "record.json".to_owned(),
         mime: "application/json".to_owned(),
-        description: "everything the sheet states, machine-readable".to_owned(),
+        description: format!("record of format {}: everything the sheet states, machine-readable", report.format),
         relationship: Relationship::Data,
         bytes: record.to_vec(),
     });
     PdfDocument {
-        bookmarks: bookmarks(report, pages.len()),
-        pages,
+        // The first page is page 1, as its foot says.
+        page_labels: vec![PageLabel { first_page: 0, prefix: String::new(), first_number: 1 }],
+        pages: pages.scenes,
+        bookmarks: pages.bookmarks,
+        links: pages.links,
         title: format!("{}: {}", report.identity.foot, report.words.kind),
-        subject: plain(&report.verdict.sentence),
+        subject: spoken(&report.verdict.sentence),
+        identifier: report.identity.foot.clone(),
+        kind: report.words.kind.clone(),
+        related: vec![format!("record.json, record of format {} of {}", report.format, report.provenance.program)],
         keywords: report.provenance.inputs.iter().map(|input| input.sha256.clone()).collect(),
         date,
         language: "en-GB".to_owned(),
-        page_labels: Vec::new(),
         attachments,
     }
 }
@@ -68,15 +74,4 @@ fn input(name: &str, bytes: &[u8]) -> Attachment {
         relationship: Relationship::Source,
         bytes: bytes.to_vec(),
     }
-}
-
-/// First and last page by what they are, the tables between by their device.
-fn bookmarks(report: &Report, pages: usize) -> Vec<Bookmark> {
-    let entry = |title: &str, page| Bookmark { title: title.to_owned(), page, y_mm: 0.0, children: Vec::new() };
-    let mut entries = vec![entry(&report.identity.device, 0)];
-    if pages > 2 {
-        entries.push(entry(&report.words.expected_and_measured, 1));
-    }
-    entries.push(entry(&report.words.provenance, pages.saturating_sub(1)));
-    entries
 }

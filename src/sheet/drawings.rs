@@ -8,6 +8,7 @@ use crate::figure::scene::Role;
 use crate::figure::scene::Scene;
 use crate::figure::scene::Segment;
 use crate::figure::scene::Stroke;
+use crate::report::AloneReading;
 use crate::report::DrawingWords;
 use crate::report::PointReport;
 use crate::sheet::grid;
@@ -56,6 +57,16 @@ fn stacked(page: &mut Page, point: &PointReport, scenes: &[Scene; 2]) {
         page.place((left + (TEXT_MM - scene.width_mm) / 2.0, below + 1.0), scene);
         page.y_mm = caption(page, (left, below + 1.4 + scene.height_mm), (words, TEXT_MM)) + 1.0;
     }
+}
+
+/// Whether the words below the drawings say which reading shows the only region of its own alone.
+pub fn tell_rule(point: &PointReport) -> bool {
+    let [rule] = point.alone.as_slice() else { return false };
+    let sides = [&rule.toward, &rule.away];
+    let told = |(side, words): (&Option<AloneReading>, &DrawingWords)| {
+        side.as_ref().is_some_and(|side| side.leads == words.leads && side.value == words.value)
+    };
+    point.drawings.len() == sides.len() && sides.into_iter().zip(&point.drawings).all(told)
 }
 
 /// Height of the block in mm.

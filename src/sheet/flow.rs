@@ -5,6 +5,9 @@ use std::rc::Rc;
 use crate::report::SmallCell;
 use crate::report::SmallTable;
 use crate::sheet::grid;
+use crate::sheet::guide::Anchor;
+use crate::sheet::guide::Target;
+use crate::sheet::guide::headed;
 use crate::sheet::page::Page;
 use crate::sheet::typeset::Style;
 
@@ -32,11 +35,14 @@ pub struct Line {
     pub rule_mm: f64,
     /// Lines that are repeated where a column begins with this one: the head of its table.
     pub repeated: Rc<[Line]>,
+    /// The place that begins with it, if one does.
+    pub anchor: Option<Anchor>,
 }
 
 impl Line {
     fn of(pieces: Vec<(f64, Style, String)>, style: Style, before_mm: f64) -> Self {
-        Self { pieces, leading_mm: style.leading_mm(), before_mm, kept: false, rule_mm: 0.0, repeated: Rc::from([]) }
+        let leading_mm = style.leading_mm();
+        Self { pieces, leading_mm, before_mm, kept: false, rule_mm: 0.0, repeated: Rc::from([]), anchor: None }
     }
 
     /// Height with the space before it.
@@ -46,6 +52,9 @@ impl Line {
 
     /// Draws it with its base line at a height.
     pub fn draw(&self, page: &mut Page, left_mm: f64, base_mm: f64) {
+        if let Some(anchor) = &self.anchor {
+            page.anchor(anchor.clone(), base_mm - self.leading_mm);
+        }
         for (x, style, text) in &self.pieces {
             page.text((left_mm + x, base_mm), *style, text);
         }
@@ -81,6 +90,13 @@ pub fn paragraph(lines: &mut Vec<Line>, text: &str, (style, width_mm): (Style, f
         let before_mm = if index == 0 { before_mm } else { 0.0 };
         let kept = index + 1 < count && count <= KEPT_LINES;
         lines.push(Line { kept, ..Line::of(vec![(0.0, style, text)], style, before_mm) });
+    }
+}
+
+/// Makes the line at a place the beginning of a part, with an entry of a depth in the table of contents.
+pub fn part(lines: &mut [Line], at: usize, (depth, title): (usize, &str)) {
+    if let Some(line) = lines.get_mut(at) {
+        line.anchor = Some(headed(Target::Part(title.to_owned()), depth, title));
     }
 }
 

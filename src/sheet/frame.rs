@@ -4,6 +4,7 @@ use crate::report::Report;
 use crate::sheet::grid;
 use crate::sheet::grid::MARGIN_MM;
 use crate::sheet::grid::TEXT_MM;
+use crate::sheet::guide::Target;
 use crate::sheet::page::Page;
 use crate::sheet::typeset::Style;
 
@@ -40,7 +41,9 @@ pub fn later_head(page: &mut Page, report: &Report) {
     let (left, right) = (page.paper.left_mm(), page.paper.right_mm());
     let base = MARGIN_MM + 3.0;
     let bold = Style::bold(grid::TEXT_PT);
-    page.text((left, base), bold, &bold.shortened(&report.identity.device, 70.0));
+    let device = bold.shortened(&report.identity.device, 70.0);
+    page.text((left, base), bold, &device);
+    page.jump([left, base - 3.4, left + bold.width_mm(&device), base + 0.9], Target::Answer, &device);
     let grey = Style::text(grid::SMALL_PT).grey().right();
     page.text((right, base), grey, &later_line(report, grey));
     page.y_mm = base + 1.9;

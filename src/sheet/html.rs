@@ -12,6 +12,7 @@ use crate::figure::scene::Run;
 use crate::report::Report;
 use crate::sheet::charts;
 use crate::sheet::columns;
+use crate::sheet::drawings as drawings_of;
 use crate::sheet::typeset;
 
 const PAGE: &str = include_str!("../../templates/sheet.html");
@@ -32,7 +33,10 @@ pub fn html(report: &Report, drawings: &[[String; 2]]) -> Result<String, Diagnos
     let charts: Vec<Vec<String>> = report.points.iter().map(svg).collect();
     let numbered: Vec<bool> = report.points.iter().map(charts::is_numbered).collect();
     let spans: Vec<usize> = report.points.iter().map(columns::twin_columns).collect();
-    let fields = Fields { report, drawings, charts: &charts, numbered: &numbered, spans: &spans, style: STYLE };
+    let told = |(at, point)| at < drawings.len() && drawings_of::tell_rule(point);
+    let told: Vec<bool> = report.points.iter().enumerate().map(told).collect();
+    let fields =
+        Fields { report, drawings, charts: &charts, numbered: &numbered, told: &told, spans: &spans, style: STYLE };
     let context = Context::from_serialize(&fields).map_err(fault)?;
     tera.render("sheet.html", &context).map_err(fault)
 }
@@ -44,6 +48,8 @@ struct Fields<'a> {
     charts: &'a [Vec<String>],
     /// Whether each point's charts number their readings.
     numbered: &'a [bool],
+    /// Whether the words below each point's drawings say which reading shows its only region alone.
+    told: &'a [bool],
     /// Columns of either half of each point's table.
     spans: &'a [usize],
     style: &'static str,

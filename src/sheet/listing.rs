@@ -11,6 +11,9 @@ use crate::sheet::drawings;
 use crate::sheet::flow;
 use crate::sheet::grid;
 use crate::sheet::grid::TEXT_MM;
+use crate::sheet::guide::Anchor;
+use crate::sheet::guide::Target;
+use crate::sheet::guide::headed;
 use crate::sheet::page::Page;
 use crate::sheet::table::Table;
 use crate::sheet::typeset::Style;
@@ -24,44 +27,55 @@ pub fn compose(book: &mut Book, scenes: &[[Scene; 2]], rules_left: bool) {
     for (index, point) in report.points.iter().enumerate() {
         let scenes = scenes.get(index).filter(|_| index != report.answer_point);
         let drawings_mm = drawings::height_mm(&book.page, point, scenes);
-        let rules_mm: f64 = answer::rule_lines(point).iter().map(flow::Line::height_mm).sum();
+        let rules = answer::rule_lines(point, scenes.is_some());
+        let rules_mm: f64 = rules.iter().map(flow::Line::height_mm).sum();
         book.turn_unless(drawings_mm + rules_mm + BEGIN_MM);
         book.page.y_mm += 3.0;
+        book.page.anchor(headed(Target::Point(index), 0, &point.title), book.page.y_mm);
         answer::point_heading(&mut book.page, point);
+        if scenes.is_some() {
+            book.page.anchor(headed(Target::Drawings(index), 1, &report.words.drawings), book.page.y_mm);
+        }
         drawings::draw(&mut book.page, point, scenes);
         if index != report.answer_point || rules_left {
-            rules(book, point);
+            book.lines(&rules);
+            book.page.y_mm += if rules.is_empty() { 0.0 } else { 1.5 };
         }
+        book.page.anchor(headed(Target::Table(index), 1, answer::table_title(report, point)), book.page.y_mm);
         notes(&mut book.page, report, point);
-        rows(book, point);
-        charts(book, point);
+        rows(book, (index, point));
+        charts(book, (index, point));
         let mut lines = Vec::new();
         point.mixing.iter().for_each(|table| flow::small_table(&mut lines, table, TEXT_MM));
+        if let Some(table) = &point.mixing {
+            flow::part(&mut lines, 0, (1, &table.heading));
+        }
         book.lines(&lines);
         book.page.y_mm += if lines.is_empty() { 0.0 } else { 4.0 };
     }
 }
 
-/// Which reading shows one region alone, where the answer page does not say it.
-fn rules(book: &mut Book, point: &PointReport) {
-    book.lines(&answer::rule_lines(point));
-    book.page.y_mm += 1.5;
-}
-
 /// The charts, each with what its marks mean on the same page.
-fn charts(book: &mut Book, point: &PointReport) {
+fn charts(book: &mut Book, (index, point): (usize, &PointReport)) {
     let grey = Style::text(grid::SMALL_PT).grey();
     let numbers = charts::is_numbered(point).then_some(&book.report.words.chart_numbers);
     let notes = point.chart_notes.iter().chain(numbers);
     let notes: Vec<String> = notes.flat_map(|note| grey.lines(note, TEXT_MM)).collect();
     let notes_mm = notes.len() as f64 * grey.leading_mm();
-    let scenes = charts::scenes(point);
-    for (index, scene) in scenes.iter().enumerate() {
-        let last = index + 1 == scenes.len();
-        book.turn_unless(scene.height_mm + if last { notes_mm + 2.0 } else { 0.0 });
+    for at in 0..point.charts.len() {
+        let last = at + 1 == point.charts.len();
+        let below_mm = if last { notes_mm + 2.0 } else { 0.0 };
+        book.turn_unless(charts::LEAST_HEIGHT_MM + below_mm);
+        // Whole millimetres, so that what was rounded above does not shape the chart.
+        let room_mm = (book.page.left_mm() - below_mm).floor();
         let page = &mut book.page;
-        page.place((page.paper.left_mm(), page.y_mm), scene);
-        page.y_mm += scene.height_mm;
+        if at == 0 {
+            page.anchor(headed(Target::Chart(index), 1, &book.report.words.chart), page.y_mm);
+        }
+        if let Some(scene) = charts::scene(point, at, room_mm.min(charts::HEIGHT_MM)) {
+            page.place((page.paper.left_mm(), page.y_mm), &scene);
+            page.y_mm += scene.height_mm;
+        }
         if last {
             page.y_mm = page.lines((page.paper.left_mm(), page.y_mm), grey, &notes) + 4.0;
         }
@@ -79,7 +93,7 @@ fn notes(page: &mut Page, report: &Report, point: &PointReport) {
     page.y_mm += 1.6;
 }
 
-fn rows(book: &mut Book, point: &PointReport) {
+fn rows(book: &mut Book, (index, point): (usize, &PointReport)) {
     let left = book.page.paper.left_mm();
     let table = Table::new(&point.rows, &book.report.words, &columns::full_sets(point), left);
     if book.turn_unless(table.head_mm() + (0..point.rows.len().min(2)).map(|row| table.row_mm(row)).sum::<f64>()) {
@@ -91,6 +105,8 @@ fn rows(book: &mut Book, point: &PointReport) {
             continued(book, point);
             head(&mut book.page, &table);
         }
+        let place = Anchor { target: Target::Row(index, row), y_mm: 0.0, entry: None };
+        book.page.anchor(place, book.page.y_mm);
         table.draw_row(&mut book.page, left, row);
     }
     book.page.y_mm += 5.0;

@@ -17,6 +17,7 @@ mod drawings;
 mod flow;
 mod frame;
 mod grid;
+mod guide;
 mod html;
 mod listing;
 mod page;
@@ -24,6 +25,7 @@ mod strip;
 mod table;
 mod typeset;
 
+pub use compose::Pages;
 pub use compose::compose;
 pub use document::document;
 pub use document::spelled;
@@ -31,7 +33,7 @@ pub use grid::HALF_MM as DRAWING_WIDTH_MM;
 pub use grid::Paper;
 pub use grid::TEXT_MM as WIDE_DRAWING_MM;
 pub use html::html;
-pub use typeset::plain;
+pub use typeset::spoken;
 
 #[cfg(test)]
 mod overlap;

@@ -9,7 +9,11 @@ use crate::figure::scene::Scene;
 use crate::figure::scene::Segment;
 use crate::figure::scene::Stroke;
 use crate::sheet::grid::Paper;
+use crate::sheet::guide::Anchor;
+use crate::sheet::guide::Jump;
+use crate::sheet::guide::Target;
 use crate::sheet::typeset::Style;
+use crate::sheet::typeset::spoken;
 
 /// A page and how far down it is filled.
 #[derive(Clone, Debug, PartialEq)]
@@ -20,13 +24,17 @@ pub struct Page {
     pub paper: Paper,
     /// Lowest filled height in mm from the top.
     pub y_mm: f64,
+    /// Places that can be gone to, in reading order.
+    pub anchors: Vec<Anchor>,
+    /// Areas that lead to a place.
+    pub jumps: Vec<Jump>,
 }
 
 impl Page {
     /// An empty page.
     pub fn new(paper: Paper) -> Self {
         let scene = Scene { width_mm: paper.width_mm(), height_mm: paper.height_mm(), marks: Vec::new() };
-        Self { scene, paper, y_mm: 0.0 }
+        Self { scene, paper, y_mm: 0.0, anchors: Vec::new(), jumps: Vec::new() }
     }
 
     /// Height that is left above the foot.
@@ -49,6 +57,16 @@ impl Page {
             self.text((x_mm, base), style, line);
         }
         base
+    }
+
+    /// Makes a place at a height that can be gone to.
+    pub fn anchor(&mut self, anchor: Anchor, y_mm: f64) {
+        self.anchors.push(Anchor { y_mm, ..anchor });
+    }
+
+    /// Makes an area lead to a place: left, top, right, bottom in mm. The words say the same to whom cannot see it.
+    pub fn jump(&mut self, sides_mm: [f64; 4], target: Target, words: &str) {
+        self.jumps.push(Jump { sides_mm, target, words: spoken(words) });
     }
 
     /// A level rule.

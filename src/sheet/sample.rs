@@ -54,6 +54,7 @@ impl Sample {
                 with_care: vec![long(2); self.points],
                 not_tested: vec!["reciprocity".to_string()],
                 limit: None,
+                named: Vec::new(),
             },
             answer_point: self.points - 1,
             points: (0..self.points).map(|index| self.point(index)).collect(),

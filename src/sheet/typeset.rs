@@ -135,6 +135,11 @@ pub fn plain(marked: &str) -> String {
     runs(marked).into_iter().map(|run| run.text).collect()
 }
 
+/// The text as it is copied or read aloud: `R_14,25`, h/e².
+pub fn spoken(marked: &str) -> String {
+    runs(marked).into_iter().map(|run| fonts::spoken(&run.text, run.level)).collect()
+}
+
 fn next_mark(text: &str) -> Option<(usize, Level)> {
     let lowered = text.find("_{").map(|start| (start, Level::Sub));
     let raised = text.find("^{").map(|start| (start, Level::Super));
@@ -191,6 +196,11 @@ mod tests {
             (" a_{", Level::Normal),
         ];
         assert_eq!(texts, expected.map(|(text, level)| (text.to_string(), level)));
+    }
+
+    #[test]
+    fn levels_are_told_in_plain_text() {
+        assert_eq!(spoken("R_{14,25} = h/e^{2} × 10^{−6}, H_{2}O, ν^{*}"), "R_14,25 = h/e² × 10⁻⁶, H₂O, ν^*");
     }
 
     #[test]

@@ -31,6 +31,7 @@ use edgesheet::resistance::Prediction;
 use edgesheet::resistance::Reading;
 use edgesheet::resistance::Setup;
 use edgesheet::sheet;
+use edgesheet::sheet::Pages;
 use edgesheet::sheet::Paper;
 
 /// A report with its drawings.
@@ -47,6 +48,11 @@ impl Made {
 
     /// The pages on a paper.
     pub fn pages_on(&self, paper: Paper) -> Vec<Scene> {
+        self.guided(paper).scenes
+    }
+
+    /// The pages with the ways through them.
+    pub fn guided(&self, paper: Paper) -> Pages {
         sheet::compose(&self.report, &self.drawings, paper)
     }
 }

@@ -2,9 +2,14 @@
 
 use std::collections::BTreeSet;
 
+use edgesheet::figure::fonts;
+use edgesheet::figure::fonts::Face;
 use edgesheet::figure::scene::Mark;
 use edgesheet::figure::scene::Scene;
+use edgesheet::figure::scene::TextMark;
 use edgesheet::sheet;
+use edgesheet::sheet::Paper;
+use edgesheet::sheet::pdf::Bookmark;
 use serde_json::Value;
 
 use crate::paper::Listed;
@@ -68,7 +73,7 @@ fn numbers(text: &str) -> BTreeSet<String> {
 
 fn strings(value: &Value, found: &mut Vec<String>) {
     match value {
-        Value::String(text) => found.push(text.replace("_{", "").replace("^{", "").replace('}', "")),
+        Value::String(text) => found.push(bare(text)),
         Value::Array(list) => list.iter().for_each(|value| strings(value, found)),
         Value::Object(fields) => fields.values().for_each(|value| strings(value, found)),
         Value::Number(number) => found.push(number.to_string()),
@@ -90,6 +95,97 @@ fn every_number_on_the_pages_stands_in_the_record() {
                 }
             }
         }
+    }
+}
+
+/// The first bold text of a page below a height, for those that tell where a link leads.
+fn first_below(page: &Scene, y_mm: f64) -> String {
+    let bold = page.marks.iter().filter_map(|mark| match mark {
+        Mark::Text(text) if text.face == Face::Bold && text.at.1 > y_mm => Some(text),
+        _ => None,
+    });
+    let place = |text: &&TextMark| (text.at.1, text.at.0);
+    let first = bold.min_by(|a, b| place(a).partial_cmp(&place(b)).unwrap());
+    first.unwrap().runs.iter().map(|run| run.text.as_str()).collect()
+}
+
+/// The name in the sentence leads to the row that begins with it, and every row of the answer table to its own.
+#[test]
+fn links_to_readings_lead_to_their_rows() {
+    for made in all() {
+        let pages = made.guided(Paper::A4);
+        let point = &made.report.points[made.report.answer_point];
+        let named = point.rows.iter().map(|row| (sheet::spoken(&row.name), bare(&row.name)));
+        let mut followed = 0;
+        for (spoken, printed) in named {
+            for link in pages.links.iter().filter(|link| link.page == 0 && link.words == spoken) {
+                assert_eq!(first_below(&pages.scenes[link.to_page], link.to_y_mm), printed);
+                followed += 1;
+            }
+        }
+        assert!(followed >= made.report.verdict.named.len(), "{followed}");
+    }
+    let links = demo().guided(Paper::A4).links;
+    assert_eq!(links.iter().filter(|link| link.page == 0 && link.words == "R_14,36").count(), 3, "{links:?}");
+}
+
+/// Links and bookmarks lie on pages, the bookmarks in reading order and each at a heading of its words.
+#[test]
+fn the_ways_through_a_sheet_end_where_they_say() {
+    for (made, paper) in all().into_iter().flat_map(|made| [(made, Paper::A4)]) {
+        let pages = made.guided(paper);
+        let number = pages.scenes.len();
+        for link in &pages.links {
+            let [left, top, right, bottom] = link.sides_mm;
+            assert!(left < right && top < bottom && right < paper.width_mm() && bottom < paper.height_mm(), "{link:?}");
+            assert!(link.to_page < number && (0.0..paper.height_mm()).contains(&link.to_y_mm), "{link:?}");
+        }
+        let mut flat = Vec::new();
+        flatten(&pages.bookmarks, &mut flat);
+        assert!(flat.is_sorted_by_key(|bookmark| bookmark.page), "{flat:?}");
+        let own = [&made.report.words.drawings, &made.report.words.chart];
+        for bookmark in flat.iter().filter(|bookmark| bookmark.page > 0 && !own.contains(&&bookmark.title)) {
+            let page = &pages.scenes[bookmark.page];
+            let there = page.marks.iter().any(|mark| match mark {
+                Mark::Text(text) => {
+                    let words: String = text.runs.iter().map(|run| fonts::spoken(&run.text, run.level)).collect();
+                    (0.0..12.0).contains(&(text.at.1 - bookmark.y_mm)) && bookmark.title.starts_with(&words)
+                }
+                Mark::Path(_) => false,
+            });
+            assert!(there || bookmark.title.starts_with("Expected"), "{bookmark:?}");
+        }
+        let titles: Vec<&str> = pages.bookmarks.iter().map(|bookmark| bookmark.title.as_str()).collect();
+        for wanted in made.report.points.iter().map(|point| &point.title).chain([&made.report.words.provenance]) {
+            assert!(titles.contains(&wanted.as_str()), "{titles:?}");
+        }
+    }
+}
+
+fn flatten<'a>(bookmarks: &'a [Bookmark], flat: &mut Vec<&'a Bookmark>) {
+    for bookmark in bookmarks {
+        flat.push(bookmark);
+        flatten(&bookmark.children, flat);
+    }
+}
+
+/// A text without its marks.
+fn bare(marked: &str) -> String {
+    marked.replace("_{", "").replace("^{", "").replace('}', "")
+}
+
+/// What is left of the last page is for remarks: the sign-off stands at its foot.
+#[test]
+fn the_last_page_is_filled() {
+    for made in all() {
+        let pages = made.pages();
+        let texts = pages.last().unwrap().marks.iter().filter_map(|mark| match mark {
+            Mark::Text(text) => Some((text.at.1, text.runs.iter().map(|run| run.text.as_str()).collect::<String>())),
+            Mark::Path(_) => None,
+        });
+        let sign_off = texts.filter(|(_, text)| *text == made.report.words.sign_off).map(|(y_mm, _)| y_mm);
+        let foot = sign_off.fold(0.0, f64::max);
+        assert!((240.0..260.0).contains(&foot), "{foot}");
     }
 }
 

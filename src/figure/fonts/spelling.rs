@@ -95,10 +95,35 @@ fn own_level(character: char) -> Level {
     }
 }
 
-/// The ordinary sign of a raised or lowered one: digits, then + − = ( ) in the order of Unicode's block
-/// "Superscripts and Subscripts".
+/// What a run says when it is copied, searched or read aloud: raised and lowered signs of Unicode where it has them, else
+/// `_` and `^` for the level, as on the terminal: `R_14,25`. Without them 10⁻⁶ would come out as 10−6.
+pub fn spoken(text: &str, level: Level) -> String {
+    let signs: Option<String> = text.chars().map(|sign| at_level(sign, level)).collect();
+    signs.unwrap_or_else(|| match level {
+        Level::Normal => text.to_owned(),
+        Level::Sub => format!("_{text}"),
+        Level::Super => format!("^{text}"),
+    })
+}
+
+/// The raised or lowered sign that Unicode has for an ordinary one.
+fn at_level(sign: char, level: Level) -> Option<char> {
+    let place = SIGNS.iter().position(|other| *other == sign)? as u32;
+    match (level, place) {
+        (Level::Normal, _) => Some(sign),
+        (Level::Sub, _) => char::from_u32(0x2080 + place),
+        (Level::Super, 1) => Some('¹'),
+        (Level::Super, 2) => Some('²'),
+        (Level::Super, 3) => Some('³'),
+        (Level::Super, _) => char::from_u32(0x2070 + place),
+    }
+}
+
+/// Digits, then + − = ( ) in the order of Unicode's block "Superscripts and Subscripts".
+const SIGNS: [char; 15] = ['0', '1', '2', '3', '4', '5', '6', '7', '8', '9', '+', '−', '=', '(', ')'];
+
+/// The ordinary sign of a raised or lowered one.
 fn base_sign(character: char) -> char {
-    const SIGNS: [char; 15] = ['0', '1', '2', '3', '4', '5', '6', '7', '8', '9', '+', '−', '=', '(', ')'];
     let place = match character {
         '¹' => 1,
         '²' => 2,

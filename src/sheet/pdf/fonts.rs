@@ -3,7 +3,9 @@
 use std::collections::BTreeMap;
 use std::collections::BTreeSet;
 
+use lopdf::Dictionary;
 use lopdf::Object;
+use lopdf::Stream;
 use md5::Digest;
 use printpdf::FontId;
 use printpdf::FontMetrics;
@@ -36,8 +38,49 @@ pub(super) fn embed(used: &Used, resources: &mut PdfResources) {
     }
 }
 
-/// Sets the height of capitals, which printpdf takes from the ascent.
-pub(super) fn correct(document: &mut lopdf::Document) {
+/// Sets what printpdf writes otherwise: the height of capitals, which it takes from the ascent, and the tables from codes
+/// to characters, into which it puts the comments of a PostScript file.
+pub(super) fn correct(used: &Used, document: &mut lopdf::Document) {
+    capitals(document);
+    for (&face, characters) in used {
+        let table = to_unicode(&cut_face(face, characters).codepoint_to_glyph);
+        let id = document.add_object(Stream::new(Dictionary::new(), table.into_bytes()));
+        let of_face = |font: &&mut Dictionary| {
+            let name = font.get(b"BaseFont").and_then(Object::as_name).unwrap_or_default();
+            font.has(b"ToUnicode") && name.ends_with(format!("+{}", face.postscript_name()).as_bytes())
+        };
+        let fonts = document.objects.values_mut().filter_map(|object| object.as_dict_mut().ok());
+        fonts.filter(of_face).for_each(|font| font.set("ToUnicode", id));
+    }
+}
+
+/// Entries that one block of a table may hold (Adobe Technical Note 5014, 1.4.1: at most 100; from memory).
+const BLOCK: usize = 100;
+
+/// The table from codes to UTF-16 (ISO 32000-1, 9.10.3).
+fn to_unicode(glyphs: &BTreeMap<u32, u16>) -> String {
+    let characters = glyphs.iter().filter_map(|(&code, &glyph)| Some((glyph, char::from_u32(code)?)));
+    let by_code: BTreeMap<u16, char> = characters.collect();
+    let by_code: Vec<(u16, char)> = by_code.into_iter().collect();
+    let mut table = String::from(
+        "/CIDInit /ProcSet findresource begin\n12 dict begin\nbegincmap\n\
+         /CIDSystemInfo << /Registry (Adobe) /Ordering (UCS) /Supplement 0 >> def\n\
+         /CMapName /Adobe-Identity-UCS def\n/CMapType 2 def\n\
+         1 begincodespacerange\n<0000> <FFFF>\nendcodespacerange\n",
+    );
+    for block in by_code.chunks(BLOCK) {
+        table += &format!("{} beginbfchar\n", block.len());
+        for (code, character) in block {
+            let mut units = [0; 2];
+            let text: String = character.encode_utf16(&mut units).iter().map(|unit| format!("{unit:04X}")).collect();
+            table += &format!("<{code:04X}> <{text}>\n");
+        }
+        table += "endbfchar\n";
+    }
+    table + "endcmap\nCMapName currentdict /CMap defineresource pop\nend\nend\n"
+}
+
+fn capitals(document: &mut lopdf::Document) {
     let descriptors = document.objects.values_mut().filter_map(|object| object.as_dict_mut().ok());
     for descriptor in descriptors.filter(|dictionary| dictionary.has_type(b"FontDescriptor")) {
         let name = descriptor.get(b"FontName").and_then(Object::as_name).unwrap_or_default();

@@ -20,8 +20,10 @@ use crate::figure::fonts::Face;
 use crate::figure::fonts::MM_PER_PT;
 use crate::figure::fonts::Piece;
 use crate::figure::fonts::pieces;
+use crate::figure::fonts::spoken;
 use crate::figure::scene::At;
 use crate::figure::scene::Colour;
+use crate::figure::scene::Level;
 use crate::figure::scene::Mark;
 use crate::figure::scene::PathMark;
 use crate::figure::scene::Scene;
@@ -151,7 +153,17 @@ impl Contents<'_> {
             self.ops.push(Op::SetLineOffset { multiplier: rise.pt() });
         }
         self.used.entry(face).or_default().extend(piece.text.chars());
+        let said = said(&piece);
+        if let Some(said) = &said {
+            let words = DictItem::Bytes(utf16(said));
+            let map = std::collections::BTreeMap::from([("ActualText".to_string(), words)]);
+            let value = vec![DictItem::Name(b"Span".to_vec()), DictItem::Dict { map }];
+            self.ops.push(Op::Unknown { key: "BDC".to_string(), value });
+        }
         self.ops.push(Op::ShowText { items: vec![TextItem::Text(piece.text)] });
+        if said.is_some() {
+            self.ops.push(Op::Unknown { key: "EMC".to_string(), value: Vec::new() });
+        }
     }
 
     fn set_fill(&mut self, colour: Colour) {
@@ -185,6 +197,21 @@ impl Contents<'_> {
     fn point(&self, (x_mm, y_mm): At) -> Point {
         Point { x: Pt(Milli::from_mm(x_mm).pt()), y: Pt(Milli::from_mm(self.height_mm - y_mm).pt()) }
     }
+}
+
+/// What a raised or lowered piece says when it is copied or read aloud (ISO 32000-1, 14.9.4).
+fn said(piece: &Piece) -> Option<String> {
+    let level = match piece.rise_mm {
+        rise if rise > 0.0 => Level::Super,
+        rise if rise < 0.0 => Level::Sub,
+        _ => return None,
+    };
+    Some(spoken(&piece.text, level))
+}
+
+/// Text as a PDF string: a byte order mark and UTF-16 (ISO 32000-1, 7.9.2.2).
+fn utf16(text: &str) -> Vec<u8> {
+    std::iter::once(0xFEFF).chain(text.encode_utf16()).flat_map(u16::to_be_bytes).collect()
 }
 
 /// Dashes that a viewer accepts: none below zero and not all zero (ISO 32000-1, 8.4.3.6); else a solid line.

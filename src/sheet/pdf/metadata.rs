@@ -68,6 +68,9 @@ fn xmp(document: &PdfDocument) -> Option<String> {
     let mut context = tera::Context::new();
     context.insert("title", &plain(&document.title));
     context.insert("subject", &plain(&document.subject));
+    context.insert("identifier", &plain(&document.identifier));
+    context.insert("kind", &plain(&document.kind));
+    context.insert("related", &document.related.iter().map(|text| plain(text)).collect::<Vec<_>>());
     context.insert("keywords", &keywords(document));
     context.insert("keyword_line", &keywords(document).join(", "));
     context.insert("language", &document.language);

@@ -6,6 +6,7 @@
 mod attach;
 mod colour;
 mod fonts;
+mod links;
 mod marks;
 mod metadata;
 mod outline;
@@ -25,6 +26,12 @@ pub struct PdfDocument {
     pub title: String,
     /// One sentence on the content.
     pub subject: String,
+    /// A name that no other document has.
+    pub identifier: String,
+    /// What kind of document it is.
+    pub kind: String,
+    /// What belongs to it: the record carried inside, with its format.
+    pub related: Vec<String>,
     /// Words to be found by.
     pub keywords: Vec<String>,
     /// Date `YYYY-MM-DD` of what the document describes; without one the file carries no date at all.
@@ -33,6 +40,8 @@ pub struct PdfDocument {
     pub language: String,
     /// Entries of the viewer's table of contents.
     pub bookmarks: Vec<Bookmark>,
+    /// Links between the pages.
+    pub links: Vec<Link>,
     /// Names of pages in the viewer; without any they are counted from 1.
     pub page_labels: Vec<PageLabel>,
     /// Files carried inside.
@@ -50,6 +59,21 @@ pub struct Bookmark {
     pub y_mm: f64,
     /// Entries below this one, at first folded away.
     pub children: Vec<Bookmark>,
+}
+
+/// An area of a page that leads to a place on a page.
+#[derive(Clone, Debug, Default, PartialEq)]
+pub struct Link {
+    /// The page that it stands on, counted from 0.
+    pub page: usize,
+    /// Left, top, right, bottom in mm from the top left corner.
+    pub sides_mm: [f64; 4],
+    /// The page that it leads to, counted from 0.
+    pub to_page: usize,
+    /// Height there in mm from the top.
+    pub to_y_mm: f64,
+    /// What it leads to, in words.
+    pub words: String,
 }
 
 /// Pages from one on are named by a prefix and a number.
@@ -95,15 +119,17 @@ pub enum Relationship {
 
 /// The bytes of the PDF file. Characters that the fonts lack are printed by a near relation or by their number.
 pub fn pdf(document: &PdfDocument) -> Vec<u8> {
-    let mut file = printed(document);
+    let (mut file, used) = printed(document);
     file.version = "1.7".to_string();
     file.binary_mark = vec![0xE2, 0xE3, 0xCF, 0xD3];
-    fonts::correct(&mut file);
+    fonts::correct(&used, &mut file);
     tidy_pages(document, &mut file);
 
     let mut entries = metadata::entries(document, &mut file);
     entries.extend(colour::entries(&mut file));
-    entries.extend(outline::entries(document, &mut file));
+    let goals = outline::Goals::of(document, &file);
+    entries.extend(outline::entries(document, &goals, &mut file));
+    links::append(document, &goals, &mut file);
     entries.extend(attach::entries(document, &mut file));
     set_catalog(&mut file, entries);
 
@@ -117,14 +143,14 @@ pub fn pdf(document: &PdfDocument) -> Vec<u8> {
 type Entries = Vec<(&'static str, Object)>;
 
 /// Pages and fonts as printpdf writes them.
-fn printed(document: &PdfDocument) -> lopdf::Document {
+fn printed(document: &PdfDocument) -> (lopdf::Document, fonts::Used) {
     let mut used = fonts::Used::new();
     let mut printed = printpdf::PdfDocument::new("");
     printed.pages = document.pages.iter().map(|scene| marks::page(scene, &mut used)).collect();
     fonts::embed(&used, &mut printed.resources);
     // Path operators go through as they are, which printpdf allows only with this option off.
     let options = printpdf::PdfSaveOptions { secure: false, ..Default::default() };
-    printed.to_lopdf_document(&options, &mut Vec::new())
+    (printed.to_lopdf_document(&options, &mut Vec::new()), used)
 }
 
 /// Sets the page boxes to the scenes' sizes and drops the empty lists of links, images and shadings.

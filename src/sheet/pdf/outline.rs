@@ -14,11 +14,10 @@ use crate::sheet::pdf::marks::Milli;
 use crate::sheet::pdf::name;
 
 /// Catalog entries for bookmarks and page names.
-pub(super) fn entries(document: &PdfDocument, file: &mut lopdf::Document) -> Entries {
+pub(super) fn entries(document: &PdfDocument, goals: &Goals, file: &mut lopdf::Document) -> Entries {
     let mut entries = Entries::new();
-    let pages = pages(document, file);
     let root = file.new_object_id();
-    if let Some(branch) = branch(&document.bookmarks, root, &pages, file) {
+    if let Some(branch) = branch(&document.bookmarks, root, goals, file) {
         let mut outlines = dictionary([("Type", name("Outlines"))]);
         branch.hang(&mut outlines, 1);
         file.set_object(root, outlines);
@@ -33,9 +32,26 @@ pub(super) fn entries(document: &PdfDocument, file: &mut lopdf::Document) -> Ent
 }
 
 /// Object and height in mm of each page.
-fn pages(document: &PdfDocument, file: &lopdf::Document) -> Vec<(ObjectId, f64)> {
-    let heights_mm = document.pages.iter().map(|scene| scene.height_mm);
-    file.get_pages().into_values().zip(heights_mm).collect()
+pub(super) struct Goals(Vec<(ObjectId, f64)>);
+
+impl Goals {
+    /// The pages of a file.
+    pub(super) fn of(document: &PdfDocument, file: &lopdf::Document) -> Self {
+        let heights_mm = document.pages.iter().map(|scene| scene.height_mm);
+        Self(file.get_pages().into_values().zip(heights_mm).collect())
+    }
+
+    /// A page, counted from 0.
+    pub(super) fn page(&self, page: usize) -> Option<(ObjectId, f64)> {
+        self.0.get(page).copied()
+    }
+
+    /// A place on a page, at a height in mm from its top; the viewer keeps its size.
+    pub(super) fn place(&self, page: usize, y_mm: f64) -> Option<Object> {
+        let (page, height_mm) = self.page(page)?;
+        let top = Milli::from_mm(height_mm - y_mm);
+        Some(vec![page.into(), name("XYZ"), 0.into(), top.into(), Object::Null].into())
+    }
 }
 
 /// The entries below one entry.
@@ -55,38 +71,25 @@ impl Branch {
 }
 
 /// Writes the entries below `parent`, and what is below them.
-fn branch(
-    bookmarks: &[Bookmark],
-    parent: ObjectId,
-    pages: &[(ObjectId, f64)],
-    file: &mut lopdf::Document,
-) -> Option<Branch> {
-    let known: Vec<(&Bookmark, ObjectId)> =
-        bookmarks.iter().filter(|mark| mark.page < pages.len()).map(|mark| (mark, file.new_object_id())).collect();
-    for (index, &(bookmark, id)) in known.iter().enumerate() {
-        let mut entry = dictionary([
-            ("Title", text_string(&bookmark.title)),
-            ("Parent", parent.into()),
-            ("Dest", destination(bookmark, pages)),
-        ]);
-        if let Some(&(_, previous)) = index.checked_sub(1).and_then(|index| known.get(index)) {
+fn branch(bookmarks: &[Bookmark], parent: ObjectId, goals: &Goals, file: &mut lopdf::Document) -> Option<Branch> {
+    let known = bookmarks.iter().filter_map(|mark| Some((mark, goals.place(mark.page, mark.y_mm)?)));
+    let known: Vec<(&Bookmark, Object, ObjectId)> =
+        known.map(|(mark, goal)| (mark, goal, file.new_object_id())).collect();
+    for (index, (bookmark, goal, id)) in known.iter().enumerate() {
+        let mut entry =
+            dictionary([("Title", text_string(&bookmark.title)), ("Parent", parent.into()), ("Dest", goal.clone())]);
+        if let Some(&(_, _, previous)) = index.checked_sub(1).and_then(|index| known.get(index)) {
             entry.set("Prev", previous);
         }
-        if let Some(&(_, next)) = known.get(index + 1) {
+        if let Some(&(_, _, next)) = known.get(index + 1) {
             entry.set("Next", next);
         }
-        if let Some(below) = branch(&bookmark.children, id, pages, file) {
+        if let Some(below) = branch(&bookmark.children, *id, goals, file) {
             below.hang(&mut entry, -1);
         }
-        file.set_object(id, entry);
+        file.set_object(*id, entry);
     }
-    Some(Branch { first: known.first()?.1, last: known.last()?.1, count: known.len() as i64 })
-}
-
-fn destination(bookmark: &Bookmark, pages: &[(ObjectId, f64)]) -> Object {
-    let Some(&(page, height_mm)) = pages.get(bookmark.page) else { return Object::Null };
-    let top = Milli::from_mm(height_mm - bookmark.y_mm);
-    vec![page.into(), name("XYZ"), 0.into(), top.into(), Object::Null].into()
+    Some(Branch { first: known.first()?.2, last: known.last()?.2, count: known.len() as i64 })
 }
 
 fn page_labels(labels: &[PageLabel]) -> Dictionary {
@@ -94,7 +97,11 @@ fn page_labels(labels: &[PageLabel]) -> Dictionary {
     sorted.sort_by_key(|label| label.first_page);
     let range = |label: &PageLabel| {
         let numbers = i64::from(label.first_number.max(1));
-        dictionary([("S", name("D")), ("P", text_string(&label.prefix)), ("St", numbers.into())])
+        let mut range = dictionary([("S", name("D")), ("St", numbers.into())]);
+        if !label.prefix.is_empty() {
+            range.set("P", text_string(&label.prefix));
+        }
+        range
     };
     let numbers = sorted.into_iter().flat_map(|label| [(label.first_page as i64).into(), range(label).into()]);
     dictionary([("Nums", numbers.collect::<Vec<Object>>().into())])

@@ -142,6 +142,17 @@ fn lowered_and_raised_text_stands_where_it_should() {
     assert_eq!(sizes.collect::<Vec<_>>(), [Some("8.5"), Some("7"), Some("8.5")]);
 }
 
+/// Each level is told in the text that is copied: without it 10⁻⁶ would come out as 10−6.
+#[test]
+fn levels_are_told_to_whom_cannot_see_them() {
+    let runs = [("R", Level::Normal), ("14,25", Level::Sub), (" 10", Level::Normal), ("−6", Level::Super)];
+    let file = read(&document(vec![a4(vec![Mark::Text(text_mark((20.0, 20.0), Face::Regular, &runs))])]));
+    assert_eq!(reading::spoken(&file), ["_14,25", "⁻⁶"]);
+    let operators = reading::operators(&file);
+    let count = |key: &str| operators.iter().filter(|operator| operator.ends_with(key)).count();
+    assert_eq!((count("BDC"), count("EMC"), count("Tj")), (2, 2, 4));
+}
+
 #[test]
 fn characters_without_a_glyph_are_spelled() {
     let mark = text_mark((20.0, 20.0), Face::Regular, &[("中 10⁻³ H₂O\u{1}", Level::Normal)]);

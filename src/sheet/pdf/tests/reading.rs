@@ -67,6 +67,15 @@ pub fn operators(file: &Document) -> Vec<String> {
     content(file).operations.iter().map(written).collect()
 }
 
+/// What the marked stretches of the first page say in place of their glyphs.
+pub fn spoken(file: &Document) -> Vec<String> {
+    let said = |operation: &Operation| {
+        let words = operation.operands.get(1)?.as_dict().ok()?.get(b"ActualText").ok()?;
+        lopdf::decode_text_string(words).ok()
+    };
+    content(file).operations.iter().filter(|operation| operation.operator == "BDC").filter_map(said).collect()
+}
+
 /// The lines of text of the first page.
 pub fn shown_texts(file: &Document) -> Vec<Shown> {
     let page = file.get_pages()[&1];

@@ -58,6 +58,30 @@ fn the_file_says_what_it_is_and_no_time_that_nobody_gave() {
     assert_eq!(reading::information(&read(&document), "CreationDate"), None);
 }
 
+/// Flag 4 is Print (ISO 32000-1, table 165), which PDF/A asks of every annotation (ISO 19005-3, 6.3.2; from memory).
+#[test]
+fn links_lie_where_they_are_seen_and_are_printed() {
+    let mut document = document(vec![a4(vec![]), a4(vec![])]);
+    let link = Link { page: 0, sides_mm: [20.0, 30.0, 60.0, 34.0], to_page: 1, to_y_mm: 97.0, words: "R_14,25".into() };
+    document.links = vec![link.clone(), Link { to_page: 9, ..link }];
+    let file = read(&document);
+    let page = file.get_dictionary(file.get_pages()[&1]).expect("a page");
+    let annotations = page.get(b"Annots").and_then(Object::as_array).expect("annotations");
+    assert_eq!(annotations.len(), 1);
+    let annotation = file.dereference(&annotations[0]).and_then(|found| found.1.as_dict()).expect("a dictionary");
+    let numbers = |key: &[u8]| -> Vec<f32> {
+        let list = annotation.get(key).and_then(Object::as_array).expect("a list");
+        list.iter().filter_map(|number| number.as_float().ok()).collect()
+    };
+    // 20, 297 − 34, 60, 297 − 30 mm, and 297 − 97 mm from below, in points of 25.4/72 mm.
+    let expected = [56.693, 745.512, 170.079, 756.850];
+    assert!(numbers(b"Rect").iter().zip(expected).all(|(a, b)| (a - b).abs() < 1e-3), "{:?}", numbers(b"Rect"));
+    assert!((numbers(b"Dest")[1] - 566.929).abs() < 1e-3);
+    assert_eq!(annotation.get(b"F").and_then(Object::as_i64).ok(), Some(4));
+    let target = annotation.get(b"Dest").and_then(Object::as_array).expect("a place")[0].as_reference();
+    assert_eq!(target.ok(), Some(file.get_pages()[&2]));
+}
+
 #[test]
 fn bookmarks_and_page_names_are_there() {
     let leaf = |title: &str, page| Bookmark { title: title.into(), page, ..Default::default() };
