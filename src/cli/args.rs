@@ -59,7 +59,7 @@ pub struct SheetOptions {
 
 /// Options of `expect`.
 #[derive(Debug, Args)]
-#[command(after_help = "Example:\n  edgesheet expect demo-devices/top-gated-bar/device.toml --reading 1-4,2-5")]
+#[command(after_help = "Example:\n  edgesheet expect demo-devices/top-gated-bar/device.toml --reading 1-4,2-5 --why")]
 pub struct ExpectOptions {
     /// Device file
     pub device: PathBuf,
@@ -71,6 +71,9 @@ pub struct ExpectOptions {
     /// Only this reading: current pair, voltage pair, such as 1-4,2-5; may be given again
     #[arg(long, value_name = "I-J,K-L", conflicts_with = "all")]
     pub reading: Vec<String>,
+    /// Say step by step why each reading is what it is
+    #[arg(long, conflicts_with = "all")]
+    pub why: bool,
     /// Machine output
     #[arg(long)]
     pub json: bool,

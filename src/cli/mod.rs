@@ -25,6 +25,7 @@ use clap::Parser;
 
 use crate::cli::args::Arguments;
 use crate::cli::args::Command;
+use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Faults;
 use crate::files::WriteFault;
 
@@ -34,6 +35,13 @@ pub(crate) enum Failure {
     Input(Faults),
     /// Could not write: exit code 3.
     Write(WriteFault, Option<String>),
+}
+
+impl Failure {
+    /// A single fault.
+    fn one(fault: Diagnostic) -> Self {
+        Self::Input(Faults(vec![fault]))
+    }
 }
 
 /// What a finished command means for the exit code.

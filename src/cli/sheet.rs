@@ -13,8 +13,6 @@ use crate::cli::published::Results;
 use crate::cli::select;
 use crate::cli::show;
 use crate::compare::Verdict;
-use crate::diagnostic::Diagnostic;
-use crate::diagnostic::Faults;
 use crate::files::Existing;
 use crate::files::Target;
 use crate::files::WriteFault;
@@ -28,9 +26,9 @@ pub fn run(options: &SheetOptions) -> Result<Finished, Failure> {
     let (comparison, rows) = judged::comparison(&loaded, options.limit).unzip();
     let results = Results { solved: &solved, beside: &beside, comparison: comparison.as_ref(), rows: rows.as_deref() };
     let published = Published::new(&loaded, results, options);
-    let report = report::build(&published.sources()).map_err(one_fault)?;
-    let record = archive::record(&report).map_err(one_fault)?;
-    let html = published.html(&report).map_err(one_fault)?;
+    let report = report::build(&published.sources()).map_err(Failure::one)?;
+    let record = archive::record(&report).map_err(Failure::one)?;
+    let html = published.html(&report).map_err(Failure::one)?;
     let pages = published.pages(&report, options.paper);
     show::notices(&loaded.notices);
     show::notices(crate::sheet::spelled(&pages.scenes).as_slice());
@@ -41,10 +39,6 @@ pub fn run(options: &SheetOptions) -> Result<Finished, Failure> {
         Some(Verdict::Disagrees) if options.judge => Ok(Finished::Disagrees),
         _ => Ok(Finished::Fine),
     }
-}
-
-fn one_fault(fault: Diagnostic) -> Failure {
-    Failure::Input(Faults(vec![fault]))
 }
 
 /// The three files of the sheet, tested before the work.

@@ -1,6 +1,11 @@
 //! A number that is exact where all that made it was.
 
 use std::fmt;
+use std::iter::Sum;
+use std::ops::Add;
+use std::ops::Div;
+use std::ops::Mul;
+use std::ops::Sub;
 
 use crate::number::Rational;
 
@@ -40,6 +45,32 @@ impl From<Rational> for Number {
 impl From<f64> for Number {
     fn from(value: f64) -> Self {
         Self::Float(value)
+    }
+}
+
+/// Exact where both are; the operation is given once for each kind.
+macro_rules! operation {
+    ($trait:ident, $function:ident) => {
+        impl $trait for &Number {
+            type Output = Number;
+            fn $function(self, other: &Number) -> Number {
+                match (self, other) {
+                    (Number::Exact(a), Number::Exact(b)) => Number::Exact($trait::$function(a, b)),
+                    _ => Number::Float($trait::$function(self.to_f64(), other.to_f64())),
+                }
+            }
+        }
+    };
+}
+
+operation!(Add, add);
+operation!(Sub, sub);
+operation!(Mul, mul);
+operation!(Div, div);
+
+impl Sum for Number {
+    fn sum<I: Iterator<Item = Self>>(numbers: I) -> Self {
+        numbers.fold(Self::Exact(Rational::ZERO), |sum, number| &sum + &number)
     }
 }
 

@@ -6,9 +6,12 @@ use crate::device::Device;
 use crate::device::OperatingPoint;
 use crate::quantity::KLITZING;
 use crate::quantity::Polarity;
+use crate::report::why;
+use crate::report::why::WhyOutput;
 use crate::resistance::Expected;
 use crate::resistance::Prediction;
 use crate::resistance::ReadingState;
+use crate::resistance::Why;
 
 /// One operating point at one polarity, solved.
 #[derive(Clone, Debug)]
@@ -21,6 +24,17 @@ pub struct SolvedPoint<'a> {
     pub prediction: Prediction,
     /// The name of every reading, if it has one.
     pub names: Vec<Option<String>>,
+    /// Why every reading is what it is, where that was asked for; else empty.
+    pub why: Vec<Option<ReadingWhy>>,
+}
+
+/// Why a reading has its number.
+#[derive(Clone, Debug)]
+pub struct ReadingWhy {
+    /// The explanation.
+    pub why: Why,
+    /// The same in sentences, with marks.
+    pub sentences: Vec<String>,
 }
 
 /// The machine output of `expect`. Keys and their order are fixed; more may be added.
@@ -53,6 +67,8 @@ struct ReadingOutput<'a> {
     shown_quadrature_ohm: Option<f64>,
     formula: Option<&'a str>,
     state: &'static str,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    why: Option<WhyOutput>,
 }
 
 /// The machine output for a device and its solved points.
@@ -65,13 +81,18 @@ fn point_output<'a>(device: &'a Device, solved: &'a SolvedPoint<'a>) -> PointOut
     let conductance = &solved.prediction.conductance;
     let contacts = conductance.contacts();
     let row = |row: usize| (0..contacts).map(|column| conductance.entry(row, column).to_string()).collect();
-    let readings = solved.prediction.expected.iter().zip(&solved.names);
+    let readings = solved.prediction.expected.iter().zip(&solved.names).enumerate();
+    let output = |(at, (expected, name)): (usize, (&'a Expected, &'a Option<String>))| {
+        let found = solved.why.get(at).and_then(Option::as_ref);
+        let why = found.map(|one| why::output(device, &one.why, why::plain(&one.sentences)));
+        ReadingOutput { why, ..reading_output(device, expected, name.as_deref()) }
+    };
     PointOutput {
         name: &solved.point.name,
         polarity: solved.polarity.sign(),
         contacts: device.contacts.iter().map(|contact| contact.name.as_str()).collect(),
         conductance: (0..contacts).map(row).collect(),
-        readings: readings.map(|(expected, name)| reading_output(device, expected, name.as_deref())).collect(),
+        readings: readings.map(output).collect(),
     }
 }
 
@@ -88,6 +109,7 @@ fn reading_output<'a>(device: &'a Device, expected: &'a Expected, name: Option<&
         shown_quadrature_ohm: expected.shown_quadrature_ohm,
         formula: expected.formula.as_deref(),
         state: state_words(expected.state),
+        why: None,
     }
 }
 

@@ -35,6 +35,7 @@ mod table_text;
 mod texts;
 mod understood;
 mod verdict;
+mod why;
 mod words;
 
 pub use alone::AloneReading;
@@ -42,6 +43,7 @@ pub use alone::AloneRule;
 pub use build::build;
 pub use chip_names::chip_names;
 pub use expect::ExpectedOutput;
+pub use expect::ReadingWhy;
 pub use expect::SolvedPoint;
 pub use expect::expected_output;
 pub use expect::state_words;
@@ -74,6 +76,9 @@ pub use understood::understood_device;
 pub use understood::understood_output;
 pub use understood::understood_readings;
 pub use understood::understood_table;
+pub use why::WhySource;
+pub use why::sentences as why_sentences;
+pub use why::text as why_text;
 pub use words::Words;
 
 /// Everything a sheet says.

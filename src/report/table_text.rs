@@ -21,7 +21,7 @@ use crate::resistance::Isolating;
 use crate::resistance::ReadingState;
 
 /// Columns of a terminal.
-const WIDTH: usize = 100;
+pub(super) const WIDTH: usize = 100;
 
 /// One table per operating point, both polarities side by side; `solved` holds each point at `+`, then at `−`.
 pub fn expected_table(device: &Device, cooldown: Option<&Cooldown>, solved: &[SolvedPoint]) -> String {
@@ -46,7 +46,7 @@ fn is_formless(expected: &Expected) -> bool {
     expected.exact.is_some() && expected.formula.is_none()
 }
 
-fn closing(cooldown: Option<&Cooldown>) -> String {
+pub(super) fn closing(cooldown: Option<&Cooldown>) -> String {
     let klitzing = printed::significant(KLITZING.value, 12);
     let meters = match cooldown {
         Some(_) => "\"shows\": what the first meter shows behind this cooldown's lines.\n",
@@ -69,7 +69,7 @@ fn point_table(device: &Device, cooldown: Option<&Cooldown>, toward: &SolvedPoin
     format!("{}\n{columns}\n{}\n\n", heading(device, toward.point), aligned(&table).join("\n"))
 }
 
-fn heading(device: &Device, point: &OperatingPoint) -> String {
+pub(super) fn heading(device: &Device, point: &OperatingPoint) -> String {
     wrapped(&point_line(device, point), WIDTH).join("\n")
 }
 
@@ -214,7 +214,7 @@ pub fn isolated_table(device: &Device, lists: &[IsolatedPoint], region: &str, al
     text
 }
 
-fn side(polarity: Polarity) -> &'static str {
+pub(super) fn side(polarity: Polarity) -> &'static str {
     match polarity {
         Polarity::Toward => "field toward you",
         Polarity::Away => "field away",

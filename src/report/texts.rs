@@ -10,9 +10,10 @@ use crate::diagnostic::Diagnostic;
 pub struct Texts(Tera);
 
 /// Every part with its built-in text.
-const PARTS: [(&str, &str); 16] = [
+const PARTS: [(&str, &str); 17] = [
     ("verdict.txt", include_str!("../../templates/verdict.txt")),
     ("why.txt", include_str!("../../templates/why.txt")),
+    ("reading-why.txt", include_str!("../../templates/reading-why.txt")),
     ("usable.txt", include_str!("../../templates/usable.txt")),
     ("with-care.txt", include_str!("../../templates/with-care.txt")),
     ("not-tested.txt", include_str!("../../templates/not-tested.txt")),

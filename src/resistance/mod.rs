@@ -19,6 +19,7 @@ mod isolate;
 mod predict;
 mod reading_set;
 mod taking;
+mod why;
 
 pub use closed_form::ClosedForm;
 pub use closed_form::ClosedForms;
@@ -33,6 +34,17 @@ pub use reading_set::readings_with;
 pub use reading_set::standard_readings;
 pub use taking::Taking;
 pub use taking::takings;
+pub use why::Arrival;
+pub use why::CurrentBalance;
+pub use why::Explanation;
+pub use why::MixturePlace;
+pub use why::NoNumber;
+pub use why::Origin;
+pub use why::Strand;
+pub use why::Stretch;
+pub use why::Why;
+pub use why::WhyStep;
+pub use why::why;
 
 /// All that physics sees.
 #[derive(Clone, Debug, PartialEq)]
@@ -118,6 +130,12 @@ impl Prediction {
     /// none where nothing fixes it. None altogether when there is no path between them.
     pub fn bundle_potentials(&self, current: [ContactIdx; 2]) -> Option<Vec<Option<Number>>> {
         predict::bundle_potentials(&self.conductance, current)
+    }
+
+    /// Potential of every contact with current leads `current`, on the same scale; none where nothing fixes it. None
+    /// altogether when there is no path between them.
+    pub fn contact_potentials(&self, current: [ContactIdx; 2]) -> Option<Vec<Option<Number>>> {
+        predict::contact_numbers(&self.conductance, current)
     }
 
     /// Puts the closed form beside every reading that has a number and a form.

@@ -69,6 +69,18 @@ fn potentials<S: Scalar>(
     Some(solved.shares.iter().map(|share| share.as_ref().and_then(mean).map(&number)).collect())
 }
 
+/// Potential of every contact with the inlet at 1 and the outlet at 0.
+pub(super) fn contact_numbers(conductance: &Conductance, current: [ContactIdx; 2]) -> Option<Vec<Option<Number>>> {
+    match conductance {
+        Conductance::Exact(solved) => numbers(contact_potentials(&Islands::of(solved), current)?, Number::Exact),
+        Conductance::Float(solved) => numbers(contact_potentials(&Islands::of(solved), current)?, drawn),
+    }
+}
+
+fn numbers<S: Scalar>(potentials: Vec<Option<S>>, number: impl Fn(S) -> Number) -> Option<Vec<Option<Number>>> {
+    Some(potentials.into_iter().map(|potential| potential.map(&number)).collect())
+}
+
 fn contact_potentials<S: Scalar>(islands: &Islands<S>, [inlet, outlet]: [ContactIdx; 2]) -> Option<Vec<Option<S>>> {
     let whole = islands.resistance([inlet, outlet], [inlet, outlet])?;
     let potential = |contact| islands.resistance([inlet, outlet], [contact, outlet]).map(|r: S| r / whole.clone());

@@ -38,3 +38,4 @@ mod start;
 mod surroundings;
 mod tableau;
 mod tidy;
+mod why;
