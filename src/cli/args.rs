@@ -29,6 +29,8 @@ pub enum Command {
     Check(CheckOptions),
     /// Write a commented device file, cooldown file and readings to begin with
     Start(StartOptions),
+    /// Show the user's guide; print schemas, completions or the manual page
+    Guide(GuideOptions),
 }
 
 /// Options of `sheet`.
@@ -109,6 +111,33 @@ pub struct StartOptions {
     /// Folder to write into; made if it is missing. Files that exist are never replaced
     #[arg(value_name = "DIR")]
     pub folder: PathBuf,
+}
+
+/// Options of `guide`.
+#[derive(Debug, Args)]
+#[command(after_help = "Example:\n  edgesheet guide polarity")]
+#[group(multiple = false)]
+pub struct GuideOptions {
+    /// Topic; without one the list of topics
+    pub topic: Option<String>,
+    /// JSON Schema of a file, for editors
+    #[arg(long, value_enum, value_name = "FILE")]
+    pub schema: Option<SchemaOf>,
+    /// Completions for a shell
+    #[arg(long, value_enum, value_name = "SHELL")]
+    pub completions: Option<clap_complete::Shell>,
+    /// Manual page, for man
+    #[arg(long)]
+    pub man: bool,
+}
+
+/// Files with a schema.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, ValueEnum)]
+pub enum SchemaOf {
+    /// Device file
+    Device,
+    /// Cooldown file
+    Cooldown,
 }
 
 /// Paper sizes.

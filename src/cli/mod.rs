@@ -7,9 +7,11 @@ mod args;
 mod beside;
 mod check;
 mod expect;
+mod guide;
 mod isolate;
 mod judged;
 mod load;
+mod manual;
 mod opened;
 mod point;
 mod published;
@@ -65,6 +67,7 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> ExitCode {
         Command::Isolate(options) => isolate::run(options),
         Command::Check(options) => check::run(options),
         Command::Start(options) => start::run(options),
+        Command::Guide(options) => guide::run(options),
     };
     match outcome {
         Ok(Finished::Fine) => ExitCode::SUCCESS,
