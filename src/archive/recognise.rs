@@ -1,5 +1,7 @@
 //! Whether a file is one that the program wrote itself, by its content.
 
+use crate::archive::archived;
+
 /// A file that the program wrote.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct Own {
@@ -30,12 +32,9 @@ fn twin(bytes: &[u8]) -> Option<Own> {
 }
 
 fn record(bytes: &[u8]) -> Option<Own> {
-    let value: serde_json::Value = bytes
-        .trim_ascii_start()
-        .first()
-        .filter(|byte| **byte == b'{')
-        .and_then(|_| serde_json::from_slice(bytes).ok())?;
-    let foot = value.get("identity")?.get("foot")?.as_str()?;
+    bytes.trim_ascii_start().starts_with(b"{").then_some(())?;
+    let value = archived::value(bytes).ok()?;
+    let foot = value.pointer("/printed/identity/foot")?.as_str()?;
     value.get("verdict")?;
     Some(Own { what: "record of a sheet", foot: Some(foot.to_owned()) })
 }

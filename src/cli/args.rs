@@ -29,8 +29,8 @@ pub enum Command {
     Check(CheckOptions),
     /// Write a commented device file, cooldown file and readings to begin with
     Start(StartOptions),
-    /// Show the user's guide; print schemas, completions or the manual page
-    Guide(GuideOptions),
+    /// Check that the inputs kept in a sheet still give its numbers, words and pages
+    Verify(VerifyOptions),
 }
 
 /// Options of `sheet`.
@@ -113,31 +113,19 @@ pub struct StartOptions {
     pub folder: PathBuf,
 }
 
-/// Options of `guide`.
+/// Options of `verify`.
 #[derive(Debug, Args)]
-#[command(after_help = "Example:\n  edgesheet guide polarity")]
-#[group(multiple = false)]
-pub struct GuideOptions {
-    /// Topic; without one the list of topics
-    pub topic: Option<String>,
-    /// JSON Schema of a file, for editors
-    #[arg(long, value_enum, value_name = "FILE")]
-    pub schema: Option<SchemaOf>,
-    /// Completions for a shell
-    #[arg(long, value_enum, value_name = "SHELL")]
-    pub completions: Option<clap_complete::Shell>,
-    /// Manual page, for man
-    #[arg(long)]
-    pub man: bool,
-}
-
-/// Files with a schema.
-#[derive(Clone, Copy, Debug, PartialEq, Eq, ValueEnum)]
-pub enum SchemaOf {
-    /// Device file
-    Device,
-    /// Cooldown file
-    Cooldown,
+#[command(
+    after_help = "Ends with 0 when everything is the same, with 1 when a number, a word or a byte differs, with 2 when \
+                        this is no sheet or a damaged one.\n\n\
+                        Example:\n  edgesheet verify tests/kept/0.1.0/KR-0417_KR-0417-c3_r1.pdf"
+)]
+pub struct VerifyOptions {
+    /// The PDF or the JSON file of a sheet
+    pub sheet: PathBuf,
+    /// Folder of original inputs, for those that the sheet does not hold
+    #[arg(long, value_name = "DIR")]
+    pub data: Option<PathBuf>,
 }
 
 /// Paper sizes.

@@ -3,6 +3,8 @@
 use std::path::Path;
 use std::sync::Arc;
 
+use crate::archive::Kept;
+use crate::archive::Role;
 use crate::cli::Failure;
 use crate::cooldown::Cooldown;
 use crate::device::Device;
@@ -16,14 +18,6 @@ use crate::layout::Layout;
 use crate::measured::MeasuredReading;
 use crate::network::Network;
 
-/// A file that went in, as it was.
-pub struct InputFile {
-    /// Its name without folders.
-    pub name: String,
-    /// Its bytes.
-    pub bytes: Vec<u8>,
-}
-
 /// Everything that was read and checked.
 pub struct Loaded {
     pub device: Device,
@@ -31,20 +25,47 @@ pub struct Loaded {
     pub network: Network,
     pub cooldown: Option<Cooldown>,
     pub measured: Vec<MeasuredReading>,
-    pub inputs: Vec<InputFile>,
+    pub inputs: Vec<Kept>,
     pub notices: Vec<Diagnostic>,
 }
 
 /// Reads and checks a device file and, where given, a cooldown file with its readings; all faults at once.
 pub fn load(device: &Path, cooldown: Option<&Path>) -> Result<Loaded, Failure> {
+    checked(Shelf::Disk, device, cooldown)
+}
+
+/// The same with files that were kept.
+pub fn load_kept(kept: &[Kept]) -> Result<Loaded, Failure> {
+    let name = |role| kept.iter().find(|file| file.role == role).map(|file| Path::new(&file.name));
+    checked(Shelf::Kept(kept), name(Role::Device).unwrap_or(Path::new("device")), name(Role::Cooldown))
+}
+
+/// Where files are read.
+#[derive(Clone, Copy)]
+enum Shelf<'a> {
+    Disk,
+    Kept(&'a [Kept]),
+}
+
+impl Shelf<'_> {
+    fn read(self, role: Role, path: &Path) -> Result<Vec<u8>, Diagnostic> {
+        let Self::Kept(kept) = self else { return files::read(path) };
+        let found = kept.iter().find(|file| file.role == role).map(|file| file.bytes.clone());
+        let fault = || Diagnostic::fault("unreadable-file", format!("{} was not kept", path.display()));
+        found.ok_or_else(|| fault().hint("the sheet cannot be computed again without it"))
+    }
+}
+
+fn checked(shelf: Shelf, device: &Path, cooldown: Option<&Path>) -> Result<Loaded, Failure> {
     let mut findings = Findings::default();
     let mut inputs = Vec::new();
-    let device = source((device, None), &mut inputs, &mut findings).and_then(|text| device_of(&text, &mut findings));
+    let device = source((shelf, Role::Device), (device, None), (&mut inputs, &mut findings))
+        .and_then(|text| device_of(&text, &mut findings));
     let layout = device.as_ref().and_then(|device| findings.take(crate::layout::layout(device)));
     let mut measured = Some(Vec::new());
     let mut read_cooldown = None;
     if let Some(path) = cooldown {
-        let text = source((path, None), &mut inputs, &mut findings);
+        let text = source((shelf, Role::Cooldown), (path, None), (&mut inputs, &mut findings));
         read_cooldown = device
             .as_ref()
             .zip(text)
@@ -52,7 +73,7 @@ pub fn load(device: &Path, cooldown: Option<&Path>) -> Result<Loaded, Failure> {
         measured = device
             .as_ref()
             .zip(read_cooldown.as_ref())
-            .and_then(|(device, cooldown)| readings(path, device, cooldown, (&mut inputs, &mut findings)));
+            .and_then(|(device, cooldown)| readings((shelf, path), device, cooldown, (&mut inputs, &mut findings)));
     }
     let (Some(device), Some(layout), Some(measured)) = (device, layout, measured) else {
         return Err(Failure::Input(findings.into_faults()));
@@ -71,27 +92,28 @@ pub fn device_of(text: &Arc<Source>, findings: &mut Findings) -> Option<Device> 
 }
 
 fn readings(
-    beside: &Path,
+    (shelf, beside): (Shelf, &Path),
     device: &Device,
     cooldown: &Cooldown,
-    (inputs, findings): (&mut Vec<InputFile>, &mut Findings),
+    (inputs, findings): (&mut Vec<Kept>, &mut Findings),
 ) -> Option<Vec<MeasuredReading>> {
     let Some(name) = &cooldown.readings_file else { return Some(Vec::new()) };
-    let text = source((&files::sibling(beside, name), cooldown.readings_place.as_ref()), inputs, findings)?;
+    let path = files::sibling(beside, name);
+    let text = source((shelf, Role::Readings), (&path, cooldown.readings_place.as_ref()), (inputs, findings))?;
     findings.take(crate::measured::from_source(&text, &crate::cooldown::Names::of(device, Some(cooldown))))
 }
 
 /// A file, and where another file names it if one does.
 fn source(
+    (shelf, role): (Shelf, Role),
     (path, named): (&Path, Option<&Place>),
-    inputs: &mut Vec<InputFile>,
-    findings: &mut Findings,
+    (inputs, findings): (&mut Vec<Kept>, &mut Findings),
 ) -> Option<Arc<Source>> {
     let placed = |fault: Diagnostic| if let Some(place) = named { fault.at(place) } else { fault };
-    let bytes = files::read(path).map_err(|fault| findings.push(placed(fault))).ok()?;
+    let bytes = shelf.read(role, path).map_err(|fault| findings.push(placed(fault))).ok()?;
     let name = path.file_name().unwrap_or(path.as_os_str()).to_string_lossy().into_owned();
     let read = crate::syntax::from_bytes(&path.display().to_string(), &bytes);
     let source = findings.take(read.map(|value| Noted { value, notices: Vec::new() }))?;
-    inputs.push(InputFile { name, bytes });
+    inputs.push(Kept { role, name, bytes });
     Some(source)
 }

@@ -7,11 +7,10 @@ mod args;
 mod beside;
 mod check;
 mod expect;
-mod guide;
 mod isolate;
 mod judged;
 mod load;
-mod manual;
+mod made;
 mod opened;
 mod point;
 mod published;
@@ -19,6 +18,7 @@ mod select;
 mod sheet;
 mod show;
 mod start;
+mod verify;
 
 use std::ffi::OsString;
 use std::process::ExitCode;
@@ -67,7 +67,7 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> ExitCode {
         Command::Isolate(options) => isolate::run(options),
         Command::Check(options) => check::run(options),
         Command::Start(options) => start::run(options),
-        Command::Guide(options) => guide::run(options),
+        Command::Verify(options) => verify::run(options),
     };
     match outcome {
         Ok(Finished::Fine) => ExitCode::SUCCESS,

@@ -1,7 +1,6 @@
 //! What a sheet is published from: finished results, drawings and the files that go in.
 
-use crate::cli::args::PaperSize;
-use crate::cli::args::SheetOptions;
+use crate::archive::Options;
 use crate::cli::load::Loaded;
 use crate::cli::point::drawn_current;
 use crate::compare::Comparison;
@@ -55,7 +54,7 @@ pub struct Published<'a> {
 
 impl<'a> Published<'a> {
     /// Draws all points.
-    pub fn new(loaded: &'a Loaded, results: Results<'a>, options: &SheetOptions) -> Self {
+    pub fn new(loaded: &'a Loaded, results: Results<'a>, options: &Options) -> Self {
         let drawings = results.solved.chunks_exact(2).map(|pair| draw_both(loaded, pair)).collect();
         Self { loaded, results, drawings, options: used(options) }
     }
@@ -94,11 +93,7 @@ impl<'a> Published<'a> {
     }
 
     /// The pages.
-    pub fn pages(&self, report: &Report, paper: PaperSize) -> Pages {
-        let paper = match paper {
-            PaperSize::A4 => Paper::A4,
-            PaperSize::Letter => Paper::Letter,
-        };
+    pub fn pages(&self, report: &Report, paper: Paper) -> Pages {
         sheet::compose(report, &self.drawings, paper)
     }
 
@@ -157,8 +152,9 @@ fn length_to_width(loaded: &Loaded) -> f64 {
     if width > 0.0 { length / width } else { 0.0 }
 }
 
-fn used(options: &SheetOptions) -> Vec<String> {
-    let limit = options.limit.map(|limit| format!("--limit {limit}"));
-    let paper = (options.paper == PaperSize::Letter).then(|| "--paper letter".to_owned());
+/// The options as they are typed.
+fn used(options: &Options) -> Vec<String> {
+    let limit = options.limit_in_u.map(|limit| format!("--limit {limit}"));
+    let paper = (options.paper != "a4").then(|| format!("--paper {}", options.paper));
     limit.into_iter().chain(paper).collect()
 }

@@ -8,6 +8,7 @@ mod write;
 
 pub use read::neighbours;
 pub use read::read;
+pub use read::read_up_to;
 pub use read::same;
 pub use read::sibling;
 pub use write::Existing;

@@ -7,11 +7,16 @@ use std::path::PathBuf;
 
 use crate::diagnostic::Diagnostic;
 
-/// No file of ours is larger; more is refused before it is read.
+/// No file of ours is larger; more is refused before all of it is read.
 const LARGEST_BYTES: u64 = 64 << 20;
 
 /// The bytes of a file. A finding without a place when it cannot be read.
 pub fn read(path: &Path) -> Result<Vec<u8>, Diagnostic> {
+    read_up_to(path, LARGEST_BYTES)
+}
+
+/// The bytes of a file that may have so many.
+pub fn read_up_to(path: &Path, largest_bytes: u64) -> Result<Vec<u8>, Diagnostic> {
     let fault = |error: std::io::Error| {
         Diagnostic::fault("unreadable-file", format!("cannot read {}: {}", path.display(), reason(&error)))
             .hint("check the name and the folder, and that you may read the file")
@@ -21,10 +26,11 @@ pub fn read(path: &Path) -> Result<Vec<u8>, Diagnostic> {
     }
     let mut bytes = Vec::new();
     let file = File::open(path).map_err(fault)?;
-    file.take(LARGEST_BYTES + 1).read_to_end(&mut bytes).map_err(fault)?;
-    if bytes.len() as u64 > LARGEST_BYTES {
-        return Err(Diagnostic::fault("large-file", format!("{} is larger than 64 MB", path.display()))
-            .hint("a device, cooldown or readings file has a few kilobytes; is this the right file?"));
+    file.take(largest_bytes + 1).read_to_end(&mut bytes).map_err(fault)?;
+    if bytes.len() as u64 > largest_bytes {
+        let most = largest_bytes >> 20;
+        return Err(Diagnostic::fault("large-file", format!("{} is larger than {most} MB", path.display()))
+            .hint("files for this command have a few kilobytes; is this the right file?"));
     }
     Ok(bytes)
 }

@@ -1,9 +1,10 @@
 //! Physical constants, each with value, unit, uncertainty and source.
 
+use schemars::JsonSchema;
 use serde::Serialize;
 
 /// A constant of nature or of convention.
-#[derive(Clone, Copy, Debug, PartialEq, Serialize)]
+#[derive(Clone, Copy, Debug, PartialEq, Serialize, JsonSchema)]
 pub struct Constant {
     /// Name.
     pub name: &'static str,

@@ -39,9 +39,14 @@ pub fn limits(texts: &Texts) -> Result<Vec<String>, Diagnostic> {
 /// Every notice with its place and advice. Folders are left out of names and of the order, so that a sheet does not
 /// depend on where its inputs lay.
 pub fn notices(notices: &[Diagnostic]) -> Vec<String> {
+    ordered(notices).into_iter().map(notice_line).collect()
+}
+
+/// Notices by the file without its folder, the place in it, and what they say.
+pub fn ordered(notices: &[Diagnostic]) -> Vec<&Diagnostic> {
     let mut ordered: Vec<&Diagnostic> = notices.iter().collect();
     ordered.sort_by_key(|notice| (notice.place.as_ref().map(|place| (file_name(place), place.start)), &notice.message));
-    ordered.into_iter().map(notice_line).collect()
+    ordered
 }
 
 fn notice_line(notice: &Diagnostic) -> String {
@@ -51,7 +56,8 @@ fn notice_line(notice: &Diagnostic) -> String {
     format!("{place}{}{hint}", notice.message)
 }
 
-fn file_name(place: &Place) -> &str {
+/// The name of a file without its folder.
+pub fn file_name(place: &Place) -> &str {
     let name = &place.source.name;
     Path::new(name).file_name().and_then(|name| name.to_str()).unwrap_or(name)
 }

@@ -78,9 +78,6 @@ pub fn expected_output<'a>(device: &'a Device, solved: &'a [SolvedPoint<'a>]) ->
 }
 
 fn point_output<'a>(device: &'a Device, solved: &'a SolvedPoint<'a>) -> PointOutput<'a> {
-    let conductance = &solved.prediction.conductance;
-    let contacts = conductance.contacts();
-    let row = |row: usize| (0..contacts).map(|column| conductance.entry(row, column).to_string()).collect();
     let readings = solved.prediction.expected.iter().zip(&solved.names).enumerate();
     let output = |(at, (expected, name)): (usize, (&'a Expected, &'a Option<String>))| {
         let found = solved.why.get(at).and_then(Option::as_ref);
@@ -91,9 +88,17 @@ fn point_output<'a>(device: &'a Device, solved: &'a SolvedPoint<'a>) -> PointOut
         name: &solved.point.name,
         polarity: solved.polarity.sign(),
         contacts: device.contacts.iter().map(|contact| contact.name.as_str()).collect(),
-        conductance: (0..contacts).map(row).collect(),
+        conductance: conductance_rows(&solved.prediction),
         readings: readings.map(output).collect(),
     }
+}
+
+/// The conductance matrix in e²/h, row by row.
+pub fn conductance_rows(prediction: &Prediction) -> Vec<Vec<String>> {
+    let conductance = &prediction.conductance;
+    let contacts = conductance.contacts();
+    let row = |row: usize| (0..contacts).map(|column| conductance.entry(row, column).to_string()).collect();
+    (0..contacts).map(row).collect()
 }
 
 fn reading_output<'a>(device: &'a Device, expected: &'a Expected, name: Option<&'a str>) -> ReadingOutput<'a> {

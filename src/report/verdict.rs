@@ -2,7 +2,6 @@
 
 use serde::Serialize;
 
-use crate::compare::Comparison;
 use crate::compare::Judgement;
 use crate::compare::Row;
 use crate::compare::Verdict;
@@ -22,6 +21,7 @@ use crate::report::Sources;
 use crate::report::Texts;
 use crate::report::VerdictBox;
 use crate::report::names;
+use crate::report::numbers::verdict_word;
 use crate::report::rows::is_judged;
 use crate::report::table::reading_of;
 
@@ -29,7 +29,7 @@ use crate::report::table::reading_of;
 pub fn verdict_box(sources: &Sources, points: &[PointReport], texts: &Texts) -> Result<VerdictBox, Diagnostic> {
     let fields = Fields::of(sources);
     Ok(VerdictBox {
-        result: result(sources.comparison),
+        result: verdict_word(sources.comparison.map_or(Verdict::NotTested, |comparison| comparison.verdict)),
         sentence: texts.lines("verdict.txt", &fields)?.join(" "),
         why: texts.lines("why.txt", &fields)?,
         usable: texts.lines("usable.txt", &fields)?,
@@ -52,14 +52,6 @@ fn named(sources: &Sources, points: &[PointReport]) -> Vec<NamedReading> {
         Some(NamedReading { name, point, row })
     };
     told.filter_map(place).collect()
-}
-
-fn result(comparison: Option<&Comparison>) -> &'static str {
-    match comparison.map(|comparison| comparison.verdict) {
-        Some(Verdict::Agrees) => "agrees",
-        Some(Verdict::Disagrees) => "disagrees",
-        Some(Verdict::NotTested) | None => "not tested",
-    }
 }
 
 /// What the parts of the verdict may say.

@@ -3,6 +3,10 @@
 use std::time::Duration;
 use std::time::Instant;
 
+use edgesheet::archive::Kept;
+use edgesheet::archive::Options;
+use edgesheet::archive::Parts;
+use edgesheet::archive::Role;
 use edgesheet::circuit::Budget;
 use edgesheet::circuit::Circuit;
 use edgesheet::compare::Comparison;
@@ -20,6 +24,7 @@ use edgesheet::quantity::Polarity;
 use edgesheet::report::Beside;
 use edgesheet::report::Input;
 use edgesheet::report::IsolatedRegion;
+use edgesheet::report::Numbers;
 use edgesheet::report::PointSource;
 use edgesheet::report::Report;
 use edgesheet::report::RowSource;
@@ -197,8 +202,8 @@ pub fn sheet(texts: &Texts, clock: &mut Clock) -> [usize; 3] {
         .map(|at| [0, 1].map(|side| solver.beside(at, Polarity::BOTH[side], &solved[at][side], clock)))
         .collect();
     let parts = (solved.as_slice(), drawings.as_slice(), beside.as_slice());
-    let report = clock.time("report", || report(&solver, parts, comparison.as_ref(), readings.len()));
-    let record = clock.time("record", || edgesheet::archive::record(&report).expect("record"));
+    let (report, numbers) = clock.time("report", || report(&solver, parts, comparison.as_ref(), readings.len()));
+    let record = clock.time("record", || record(&report, &numbers, texts));
     let html = clock.time("twin", || {
         let pictures: Vec<[String; 2]> =
             drawings.iter().map(|pair| [0, 1].map(|side| edgesheet::figure::to_svg(&pair[side]))).collect();
@@ -217,7 +222,7 @@ fn report(
     (solved, drawings, beside): (Both<Prediction>, Both<Scene>, Both<Beside>),
     comparison: Option<&Comparison>,
     readings: usize,
-) -> Report {
+) -> (Report, Numbers) {
     let rows = vec![RowSource::default(); comparison.map_or(0, |comparison| comparison.rows.len())];
     let points = solver.device.points.iter().enumerate().map(|(index, point)| PointSource {
         point,
@@ -228,7 +233,7 @@ fn report(
         drawings: Some(&drawings[index]),
         beside: [&beside[index][0], &beside[index][1]],
     });
-    edgesheet::report::build(&Sources {
+    let sources = Sources {
         device: &solver.device,
         cooldown: solver.cooldown.as_ref(),
         points: points.collect(),
@@ -238,6 +243,13 @@ fn report(
         notices: &[],
         options: Vec::new(),
         program_version: "bench",
-    })
-    .expect("report")
+    };
+    (edgesheet::report::build(&sources).expect("report"), edgesheet::report::numbers(&sources))
+}
+
+fn record(report: &Report, numbers: &Numbers, texts: &Texts) -> Vec<u8> {
+    let inputs = [Kept { role: Role::Device, name: "device.toml".to_owned(), bytes: texts.device.as_bytes().to_vec() }];
+    let options = Options { paper: "a4".to_owned(), limit_in_u: None };
+    let parts = Parts { report, numbers, inputs: &inputs, options: &options, version: "bench" };
+    edgesheet::archive::record(parts).expect("record")
 }

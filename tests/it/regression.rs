@@ -52,7 +52,7 @@ fn a_device_without_a_path_gets_an_honest_sheet() {
         run(&folder, &format!("sheet {files} -o out")).answer();
         let record = fs::read_to_string(folder.join(format!("out/{stem}.json"))).unwrap();
         let record: serde_json::Value = serde_json::from_str(&record).unwrap();
-        let rows = record["points"][0]["rows"].as_array().unwrap();
+        let rows = record["printed"]["points"][0]["rows"].as_array().unwrap();
         assert_eq!(rows.len(), 7, "{files}");
         for cell in rows.iter().flat_map(|row| [&row["toward"], &row["away"]]) {
             assert_eq!(cell["state"], "no path", "{files}");
@@ -114,7 +114,7 @@ fn instruments_are_listed_with_standard_uncertainties() {
     run(&folder, "sheet device.toml cooldown.toml -o out").answer();
     let record = fs::read_to_string(folder.join("out/bar_cooldown_r1.json")).unwrap();
     let record: serde_json::Value = serde_json::from_str(&record).unwrap();
-    let stated: Vec<f64> = cells(&record["instruments"]).filter_map(|cell| cell["u"].as_f64()).collect();
+    let stated: Vec<f64> = cells(&record["printed"]["instruments"]).filter_map(|cell| cell["u"].as_f64()).collect();
     assert_eq!(stated, [2.0, 0.2, 0.001]);
 }
 
