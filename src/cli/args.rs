@@ -31,6 +31,8 @@ pub enum Command {
     Start(StartOptions),
     /// Check that the inputs kept in a sheet still give its numbers, words and pages
     Verify(VerifyOptions),
+    /// Show the user's guide; print schemas, completions or the manual page
+    Guide(GuideOptions),
 }
 
 /// Options of `sheet`.
@@ -126,6 +128,33 @@ pub struct VerifyOptions {
     /// Folder of original inputs, for those that the sheet does not hold
     #[arg(long, value_name = "DIR")]
     pub data: Option<PathBuf>,
+}
+
+/// Options of `guide`.
+#[derive(Debug, Args)]
+#[command(after_help = "Example:\n  edgesheet guide polarity")]
+#[group(multiple = false)]
+pub struct GuideOptions {
+    /// Topic; without one the list of topics
+    pub topic: Option<String>,
+    /// JSON Schema of a file, for editors
+    #[arg(long, value_enum, value_name = "FILE")]
+    pub schema: Option<SchemaOf>,
+    /// Completions for a shell
+    #[arg(long, value_enum, value_name = "SHELL")]
+    pub completions: Option<clap_complete::Shell>,
+    /// Manual page, for man
+    #[arg(long)]
+    pub man: bool,
+}
+
+/// Files with a schema.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, ValueEnum)]
+pub enum SchemaOf {
+    /// Device file
+    Device,
+    /// Cooldown file
+    Cooldown,
 }
 
 /// Paper sizes.

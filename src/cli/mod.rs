@@ -7,10 +7,12 @@ mod args;
 mod beside;
 mod check;
 mod expect;
+mod guide;
 mod isolate;
 mod judged;
 mod load;
 mod made;
+mod manual;
 mod opened;
 mod point;
 mod published;
@@ -68,6 +70,7 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> ExitCode {
         Command::Check(options) => check::run(options),
         Command::Start(options) => start::run(options),
         Command::Verify(options) => verify::run(options),
+        Command::Guide(options) => guide::run(options),
     };
     match outcome {
         Ok(Finished::Fine) => ExitCode::SUCCESS,

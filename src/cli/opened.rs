@@ -84,5 +84,5 @@ fn open(path: &Path) -> Result<Opened, Faults> {
 
 fn not_ours(name: &str) -> Diagnostic {
     Diagnostic::fault("unknown-file", format!("{name} is no device, cooldown, readings, record or sheet file"))
-        .hint("`edgesheet start DIR` writes a device file, a cooldown file and readings to begin with")
+        .hint("`edgesheet start DIR` writes one of each to begin with, and `edgesheet guide` says what stands in them")
 }

@@ -15,7 +15,25 @@ use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Faults;
 use crate::diagnostic::show;
 use crate::files::WriteFault;
+use crate::guide::Bold;
+use crate::guide::Look;
 use crate::report::Report;
+
+/// Columns of a page where the terminal does not say how many it has.
+const PAGE: usize = 80;
+/// Most columns of a page: longer lines are hard to read.
+const WIDEST_PAGE: usize = 100;
+
+/// How the guide is shown: as wide as the terminal, with bold headings there and nowhere else.
+pub fn look() -> Look {
+    let out = std::io::stdout();
+    let width = terminal_size::terminal_size_of(&out).map_or(PAGE, |(width, _)| usize::from(width.0).min(WIDEST_PAGE));
+    let bold = match anstream::AutoStream::choice(&out) {
+        anstream::ColorChoice::Never => Bold::Nothing,
+        _ => Bold::Headings,
+    };
+    Look { width, bold }
+}
 
 /// Answers as text.
 pub fn text(text: &str) -> Result<Finished, Failure> {

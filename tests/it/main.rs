@@ -14,6 +14,7 @@ mod expect_json;
 mod expect_text;
 mod forms;
 mod good;
+mod guide;
 mod hand;
 mod help;
 mod hostile;

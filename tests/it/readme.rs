@@ -8,7 +8,7 @@ use crate::program::repository;
 use crate::program::run;
 
 /// The fenced blocks, each with the word behind its opening fence.
-fn fences(text: &str) -> Vec<(String, String)> {
+pub fn fences(text: &str) -> Vec<(String, String)> {
     let mut found = Vec::new();
     let mut open: Option<(String, String)> = None;
     for line in text.lines() {

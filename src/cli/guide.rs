@@ -1,0 +1,33 @@
+//! `edgesheet guide`: the user's guide, and what editors, shells and man read.
+
+use clap::CommandFactory;
+
+use crate::cli::Failure;
+use crate::cli::Finished;
+use crate::cli::args::Arguments;
+use crate::cli::args::GuideOptions;
+use crate::cli::args::SchemaOf;
+use crate::cli::manual;
+use crate::cli::show;
+use crate::guide;
+use crate::syntax::keys::COOLDOWN_FILE;
+use crate::syntax::keys::DEVICE_FILE;
+
+pub fn run(options: &GuideOptions) -> Result<Finished, Failure> {
+    if let Some(file) = options.schema {
+        return show::text(&match file {
+            SchemaOf::Device => guide::schema(&DEVICE_FILE),
+            SchemaOf::Cooldown => guide::schema(&COOLDOWN_FILE),
+        });
+    }
+    if let Some(shell) = options.completions {
+        return show::text(&manual::completions(shell, Arguments::command()));
+    }
+    if options.man {
+        return show::text(&manual::page(Arguments::command()));
+    }
+    match &options.topic {
+        Some(word) => show::text(&guide::topic(word, show::look()).map_err(Failure::Input)?),
+        None => show::text(&guide::topics(show::look())),
+    }
+}
