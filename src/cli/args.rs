@@ -137,7 +137,7 @@ pub struct VerifyOptions {
 pub struct GuideOptions {
     /// Topic; without one the list of topics
     pub topic: Option<String>,
-    /// JSON Schema of a file, for editors
+    /// JSON Schema of a file, for editors and programs
     #[arg(long, value_enum, value_name = "FILE")]
     pub schema: Option<SchemaOf>,
     /// Completions for a shell
@@ -155,6 +155,8 @@ pub enum SchemaOf {
     Device,
     /// Cooldown file
     Cooldown,
+    /// Record of a sheet
+    Record,
 }
 
 /// Paper sizes.

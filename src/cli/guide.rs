@@ -2,6 +2,7 @@
 
 use clap::CommandFactory;
 
+use crate::archive;
 use crate::cli::Failure;
 use crate::cli::Finished;
 use crate::cli::args::Arguments;
@@ -15,10 +16,11 @@ use crate::syntax::keys::DEVICE_FILE;
 
 pub fn run(options: &GuideOptions) -> Result<Finished, Failure> {
     if let Some(file) = options.schema {
-        return show::text(&match file {
-            SchemaOf::Device => guide::schema(&DEVICE_FILE),
-            SchemaOf::Cooldown => guide::schema(&COOLDOWN_FILE),
-        });
+        return match file {
+            SchemaOf::Device => show::text(&guide::schema(&DEVICE_FILE)),
+            SchemaOf::Cooldown => show::text(&guide::schema(&COOLDOWN_FILE)),
+            SchemaOf::Record => show::json(&archive::schema()),
+        };
     }
     if let Some(shell) = options.completions {
         return show::text(&manual::completions(shell, Arguments::command()));

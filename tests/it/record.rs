@@ -136,6 +136,11 @@ fn every_record_is_as_its_schema_says() {
     }
 }
 
+#[test]
+fn the_program_prints_the_schema() {
+    assert_eq!(run(&repository(), "guide --schema record").json(), edgesheet::archive::schema());
+}
+
 /// JSON Schema allows what it does not forbid: a reader with today's schema must take tomorrow's record.
 #[test]
 fn the_schema_allows_keys_of_later_versions() {
