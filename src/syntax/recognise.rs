@@ -20,7 +20,9 @@ pub fn recognise(source: &Arc<Source>, kinds: &[&'static FileSpec]) -> Option<&'
     let fit = |file: &FileSpec| tree.entries.iter().filter(|entry| fits(entry, file)).count();
     let best = kinds.iter().max_by_key(|file| fit(file))?;
     let alike = kinds.iter().filter(|file| fit(file) == fit(best)).count();
-    (fit(best) > 0 && alike == 1 && faults.len() <= fit(best) + MOST_FAULTS).then_some(best)
+    // One name in common with the file of another program says nothing: half of them must be ours.
+    let ours = fit(best) > 0 && fit(best) * 2 >= tree.entries.len();
+    (ours && alike == 1 && faults.len() <= fit(best) + MOST_FAULTS).then_some(best)
 }
 
 /// Whether the file has this key, and a table under it exactly where one belongs.
@@ -58,6 +60,7 @@ mod tests {
             ("[mesa\nlength_um = 3\n[[contact]]\nname = \"1\"\n", Some("device file")),
             ("[source]\ncurrent_nA = 3\n", Some("cooldown file")),
             ("format = 1\n", None),
+            ("[package]\nname = \"x\"\n[lib]\n[[bench]]\nname = \"y\"\n", None),
             ("[package]\nname = \"x\"\n", None),
             ("", None),
         ] {

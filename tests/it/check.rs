@@ -151,6 +151,19 @@ fn every_demo_passes_and_no_line_is_wide() {
     }
 }
 
+/// None of these is of ours: a manifest that has a table of a name that we know, prose that shows device files, a picture,
+/// a lock file, nothing at all.
+#[test]
+fn files_of_other_programs_are_refused() {
+    for name in
+        ["Cargo.toml", "README.md", "demo-devices/pictures/answer-page.png", "Cargo.lock", "tests/bad/empty.csv"]
+    {
+        let ran = run(&repository(), &format!("check {name}"));
+        assert_eq!((ran.code, ran.out.as_str()), (2, "1 fault\n"), "{name}");
+        says(&ran.err, &["unknown-file", name]);
+    }
+}
+
 #[test]
 fn every_bad_file_is_refused() {
     let folder = repository().join("tests/bad");
