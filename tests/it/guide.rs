@@ -57,6 +57,22 @@ fn an_unknown_topic_is_answered_with_the_one_that_was_meant() {
     assert_eq!(run(&repository(), "guide device --man").code, 2, "one thing at a time");
 }
 
+/// A topic or an answer of `check` that tells people to type a command names one that the program has.
+#[test]
+fn commands_that_the_guide_names_exist() {
+    let commands = crate::help::commands();
+    let folder = crate::program::with_demo("guide/named", "top-gated-bar");
+    run(&folder, "sheet device.toml -o out").answer();
+    let checked = run(&folder, "check out/KR-0417_expected_r1.pdf").answer();
+    let texts = topics().into_iter().map(|topic| topic_text(&topic)).chain([checked]);
+    let text = texts.collect::<Vec<_>>().join("\n").replace('\n', " ");
+    let named: Vec<&str> = text.split("edgesheet ").skip(1).filter_map(|rest| rest.split([' ', '`']).next()).collect();
+    assert!(named.len() > 20 && named.contains(&"verify"), "{named:?}");
+    for word in named {
+        assert!(commands.iter().any(|command| command == word), "`edgesheet {word}` is no command");
+    }
+}
+
 fn every_key(table: &'static TableSpec) -> Vec<&'static Key> {
     let inner = table.keys.iter().filter_map(Key::table).flat_map(every_key);
     table.keys.iter().chain(inner).collect()
