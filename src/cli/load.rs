@@ -112,7 +112,7 @@ fn source(
     let placed = |fault: Diagnostic| if let Some(place) = named { fault.at(place) } else { fault };
     let bytes = shelf.read(role, path).map_err(|fault| findings.push(placed(fault))).ok()?;
     let name = path.file_name().unwrap_or(path.as_os_str()).to_string_lossy().into_owned();
-    let read = crate::syntax::from_bytes(&path.display().to_string(), &bytes);
+    let read = crate::syntax::from_bytes(&files::shown(path), &bytes);
     let source = findings.take(read.map(|value| Noted { value, notices: Vec::new() }))?;
     inputs.push(Kept { role, name, bytes });
     Some(source)

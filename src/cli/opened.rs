@@ -34,7 +34,7 @@ pub enum Kind {
 impl Opened {
     /// The file as the user named it.
     pub fn name(&self) -> String {
-        self.path.display().to_string()
+        files::shown(&self.path)
     }
 
     /// The text of a device file.
@@ -65,7 +65,7 @@ fn open(path: &Path) -> Result<Opened, Faults> {
     if let Some(own) = archive::recognise(&bytes) {
         return Ok(Opened { path: path.to_owned(), kind: Kind::Own(own) });
     }
-    let name = path.display().to_string();
+    let name = files::shown(path);
     if bytes.contains(&0) && !bytes.starts_with(&[0xFF, 0xFE]) && !bytes.starts_with(&[0xFE, 0xFF]) {
         return Err(Faults(vec![not_ours(&name)]));
     }

@@ -13,8 +13,10 @@ use crate::cli::Finished;
 use crate::diagnostic::Colour;
 use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Faults;
-use crate::diagnostic::show;
+use crate::diagnostic::show as told;
+use crate::files::Refused;
 use crate::files::WriteFault;
+use crate::files::shown;
 use crate::guide::Bold;
 use crate::guide::Look;
 use crate::report::Report;
@@ -52,8 +54,9 @@ pub fn json(value: &impl Serialize) -> Result<Finished, Failure> {
 fn ended(written: std::io::Result<()>) -> Result<Finished, Failure> {
     match written {
         Err(error) if error.kind() != ErrorKind::BrokenPipe => {
-            let path = PathBuf::from("the answer");
-            Err(Failure::Write(WriteFault::Refused { path, reason: error.kind().to_string() }, None))
+            let (path, reason) = (PathBuf::from("the answer"), error.kind().to_string());
+            let advice = "what it says is not whole: make room where standard output goes, or send it elsewhere";
+            Err(Failure::Write(Refused { path, reason, advice }.into(), None))
         }
         _ => Ok(Finished::Fine),
     }
@@ -62,7 +65,7 @@ fn ended(written: std::io::Result<()>) -> Result<Finished, Failure> {
 /// The verdict and the files written.
 pub fn written(report: &Report, paths: &[PathBuf]) -> Result<Finished, Failure> {
     let mut lines = vec![crate::sheet::spoken(&report.verdict.sentence)];
-    lines.extend(paths.iter().map(|path| format!("wrote {}", path.display())));
+    lines.extend(paths.iter().map(|path| format!("wrote {}", shown(path))));
     text(&(lines.join("\n") + "\n"))
 }
 
@@ -87,18 +90,21 @@ pub fn failure(failure: &Failure) -> ExitCode {
 
 /// Help and version go to standard output, mistakes on the command line to standard error.
 pub fn usage(error: &clap::Error) -> ExitCode {
-    let _ = error.print();
-    if error.use_stderr() { ExitCode::from(2) } else { ExitCode::SUCCESS }
+    let printed = error.print();
+    if error.use_stderr() {
+        return ExitCode::from(2);
+    }
+    ended(printed).map_or_else(|fault| failure(&fault), |_| ExitCode::SUCCESS)
 }
 
 fn write_fault(fault: &WriteFault, advice: Option<&str>) -> Diagnostic {
     let finding = match fault {
         WriteFault::Exists(paths) => {
-            let names: Vec<String> = paths.iter().map(|path| path.display().to_string()).collect();
+            let names: Vec<String> = paths.iter().map(|path| shown(path)).collect();
             Diagnostic::fault("file-exists", format!("not replaced: {}", names.join(", ")))
         }
-        WriteFault::Refused { path, reason } => {
-            Diagnostic::fault("cannot-write", format!("cannot write {}: {reason}", path.display()))
+        WriteFault::Refused(Refused { path, reason, advice }) => {
+            Diagnostic::fault("cannot-write", format!("cannot write {}: {reason}", shown(path))).hint(*advice)
         }
     };
     match advice {
@@ -109,7 +115,7 @@ fn write_fault(fault: &WriteFault, advice: Option<&str>) -> Diagnostic {
 
 fn findings(list: &[Diagnostic]) {
     let coloured = anstream::AutoStream::choice(&std::io::stderr()) != anstream::ColorChoice::Never;
-    let text = show(list, if coloured { Colour::Coloured } else { Colour::Plain });
+    let text = told(list, if coloured { Colour::Coloured } else { Colour::Plain });
     if !list.is_empty() {
         let _ = anstream::stderr().lock().write_all(format!("{text}\n\n").as_bytes());
     }

@@ -1,5 +1,6 @@
 //! Reading a file whole.
 
+use std::fs;
 use std::fs::File;
 use std::io::Read;
 use std::path::Path;
@@ -11,28 +12,37 @@ use crate::diagnostic::Diagnostic;
 const LARGEST_BYTES: u64 = 64 << 20;
 
 /// The bytes of a file. A finding without a place when it cannot be read.
+///
+/// Only a plain file, or a link to one: a sheet names its inputs and carries them, and others can take them up again by
+/// their names. A pipe has none, a device has no end.
 pub fn read(path: &Path) -> Result<Vec<u8>, Diagnostic> {
     read_up_to(path, LARGEST_BYTES)
 }
 
-/// The bytes of a file that may have so many.
+/// The bytes of a plain file that may have so many.
 pub fn read_up_to(path: &Path, largest_bytes: u64) -> Result<Vec<u8>, Diagnostic> {
-    let fault = |error: std::io::Error| {
-        Diagnostic::fault("unreadable-file", format!("cannot read {}: {}", path.display(), reason(&error)))
-            .hint("check the name and the folder, and that you may read the file")
-    };
-    if path.is_dir() {
-        return Err(Diagnostic::fault("unreadable-file", format!("{} is a folder", path.display())).hint("name a file"));
+    let kind = fs::metadata(path).map_err(|error| unreadable(path, &error))?.file_type();
+    if kind.is_dir() {
+        return Err(fault(format!("{} is a folder", shown(path))).hint("name a file"));
     }
+    if !kind.is_file() {
+        return Err(fault(format!("{} is a pipe or a device, not a file", shown(path)))
+            .hint("save what comes from it to a file and name that: a sheet names its inputs"));
+    }
+    let file = File::open(path).map_err(|error| unreadable(path, &error))?;
     let mut bytes = Vec::new();
-    let file = File::open(path).map_err(fault)?;
-    file.take(largest_bytes + 1).read_to_end(&mut bytes).map_err(fault)?;
+    file.take(largest_bytes + 1).read_to_end(&mut bytes).map_err(|error| unreadable(path, &error))?;
     if bytes.len() as u64 > largest_bytes {
         let most = largest_bytes >> 20;
-        return Err(Diagnostic::fault("large-file", format!("{} is larger than {most} MB", path.display()))
+        return Err(Diagnostic::fault("large-file", format!("{} is larger than {most} MB", shown(path)))
             .hint("files for this command have a few kilobytes; is this the right file?"));
     }
     Ok(bytes)
+}
+
+/// A path as it is shown: what would move the cursor or cannot be written down is `�`.
+pub fn shown(path: &Path) -> String {
+    path.to_string_lossy().chars().map(|sign| if sign.is_control() { '\u{FFFD}' } else { sign }).collect()
 }
 
 /// A file named in another file: relative names are looked up in that file's folder.
@@ -64,4 +74,16 @@ pub fn same(one: &Path, other: &Path) -> bool {
 pub(super) fn reason(error: &std::io::Error) -> String {
     let text = error.to_string();
     text.split(" (os error").next().unwrap_or(&text).to_owned()
+}
+
+fn fault(message: String) -> Diagnostic {
+    Diagnostic::fault("unreadable-file", message)
+}
+
+fn unreadable(path: &Path, error: &std::io::Error) -> Diagnostic {
+    let finding = fault(format!("cannot read {}: {}", shown(path), reason(error)));
+    if path == Path::new("-") {
+        return finding.hint("standard input is not read: save it to a file and name that");
+    }
+    finding.hint("check the name and the folder, and that you may read the file")
 }

@@ -48,7 +48,16 @@ fn safe(id: &str) -> String {
     let keep = |c: char| if c.is_ascii_alphanumeric() || matches!(c, '-' | '.' | '_') { c } else { '-' };
     let plain: String = id.chars().map(keep).take(LONGEST).collect();
     let plain = plain.trim_start_matches('.');
-    if plain == id { plain.to_owned() } else { format!("{plain}-{}", &sha256(id.as_bytes())[..6]) }
+    // What some systems keep for devices is kept for them with any ending.
+    let plain = if is_device(plain) { plain.replace('.', "-") } else { plain.to_owned() };
+    if plain == id { plain } else { format!("{plain}-{}", &sha256(id.as_bytes())[..6]) }
+}
+
+/// Whether a name begins, up to its first dot, as some systems call a device: `con`, `lpt1`.
+fn is_device(name: &str) -> bool {
+    let first = name.split('.').next().unwrap_or_default().to_ascii_lowercase();
+    let numbered = |kind: &str| first.strip_prefix(kind).is_some_and(|rest| matches!(rest.as_bytes(), [b'1'..=b'9']));
+    ["con", "prn", "aux", "nul"].contains(&first.as_str()) || numbered("com") || numbered("lpt")
 }
 
 #[cfg(test)]
@@ -64,6 +73,11 @@ mod tests {
             assert!(name.chars().all(ordinary) && !name.starts_with('.') && name.len() < 120, "{name}");
         }
         assert_ne!(safe("a/b"), safe("a:b"));
+        // Names of devices of one common system (common practice), with an ending after them.
+        for id in ["con.1", "NUL.a.b", "lpt9.x"] {
+            assert!(!safe(id).contains('.'), "{}", safe(id));
+        }
+        assert_eq!(safe("console.1"), "console.1");
     }
 
     /// The one-block example of FIPS 180-4, `abc`; value from memory.

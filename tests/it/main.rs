@@ -43,3 +43,4 @@ mod tableau;
 mod tidy;
 mod verify;
 mod why;
+mod world;
