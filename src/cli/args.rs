@@ -120,7 +120,7 @@ pub struct StartOptions {
 #[command(
     after_help = "Ends with 0 when everything is the same, with 1 when a number, a word or a byte differs, with 2 when \
                         this is no sheet or a damaged one.\n\n\
-                        Example:\n  edgesheet verify tests/kept/0.1.0/KR-0417_KR-0417-c3_r1.pdf"
+                        Example:\n  edgesheet verify tests/kept/0.2.0-dev/KR-0417_KR-0417-c3_r1.pdf"
 )]
 pub struct VerifyOptions {
     /// The PDF or the JSON file of a sheet
