@@ -27,7 +27,7 @@ pub fn run(options: &IsolateOptions) -> Result<Finished, Failure> {
             lists.push(report::IsolatedPoint::new(point, polarity, &forms, found));
         }
     }
-    if !report::any_has_region(&lists) {
+    if !report::is_region(&loaded.device, &lists, &options.region) {
         return Err(Failure::Input(report::unknown_region(&options.region, &known)));
     }
     show::notices(&loaded.notices);

@@ -93,7 +93,8 @@ fn beside(loaded: &Loaded, solution: &Solution) -> Beside {
     let prediction = &solution.solved.prediction;
     Beside {
         isolated: isolated(loaded, solution),
-        other_mixing: other_mixing(loaded, &solution.solved),
+        unmixed: with_rim(loaded, &solution.solved, Mixing::None),
+        mixed: with_rim(loaded, &solution.solved, Mixing::Full),
         corrections: prediction.corrections(&solution.setup),
         two_terminal: two_terminal(loaded, solution),
     }
@@ -123,13 +124,13 @@ fn isolated(loaded: &Loaded, Solution { solved, setup, forms }: &Solution) -> Ve
     regions.map(|(at, region)| IsolatedRegion { name: region.name.clone(), best: best(at) }).collect()
 }
 
-/// The same readings with full mixing along the rim where none is in use, and the other way round.
-fn other_mixing(loaded: &Loaded, solved: &SolvedPoint) -> Vec<Expected> {
+/// The same readings with another mixing along the rim.
+fn with_rim(loaded: &Loaded, solved: &SolvedPoint, rim: Mixing) -> Vec<Expected> {
+    if solved.point.edge.rim == rim {
+        return solved.prediction.expected.clone();
+    }
     let mut point = solved.point.clone();
-    point.edge.rim = match point.edge.rim {
-        Mixing::None | Mixing::Over(_) => Mixing::Full,
-        Mixing::Full => Mixing::None,
-    };
+    point.edge.rim = rim;
     let readings: Vec<Reading> = solved.prediction.expected.iter().map(|expected| expected.reading.clone()).collect();
     crate::resistance::predict(&loaded.network, &setup(loaded, &point, solved.polarity), &readings).expected
 }

@@ -122,7 +122,7 @@ fn draw(loaded: &Loaded, solved: &SolvedPoint) -> Scene {
         names: &crate::report::chip_names(&loaded.device),
         layout: &loaded.layout,
         channels: &solved.prediction.channels,
-        fillings: &operating.fillings,
+        fillings: if solved.point.modes.is_some() { &[] } else { &operating.fillings },
         polarity: solved.polarity,
         potentials: solved.prediction.bundle_potentials(current).as_deref(),
         size_mm: size_mm(loaded),

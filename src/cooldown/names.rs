@@ -4,6 +4,7 @@ use crate::cooldown::Cooldown;
 use crate::cooldown::MagnetSense;
 use crate::device::ContactIdx;
 use crate::device::Device;
+use crate::device::Drive;
 use crate::diagnostic::Diagnostic;
 use crate::syntax::did_you_mean;
 use crate::syntax::quoted;
@@ -19,6 +20,8 @@ pub struct Names {
     pub meters: Option<Vec<String>>,
     /// Where a positive field points.
     pub magnet: MagnetSense,
+    /// What sets the sense of the channels.
+    pub driven_by: Drive,
     /// Divides every written uncertainty.
     pub coverage_factor: f64,
 }
@@ -52,6 +55,7 @@ impl Names {
                 .collect(),
             points: device.points.iter().map(|point| point.name.clone()).collect(),
             meters: cooldown.map(|cooldown| cooldown.meters.iter().map(|meter| meter.name.clone()).collect()),
+            driven_by: device.driven_by,
             magnet: cooldown.map_or(MagnetSense::Unknown, |cooldown| cooldown.magnet.positive),
             coverage_factor: cooldown.map_or(1.0, |cooldown| cooldown.coverage_factor),
         }

@@ -44,6 +44,10 @@ pub struct Device {
     pub mesa: Mesa,
     /// Mixing along rims and borders.
     pub edge: EdgeRules,
+    /// Which ladder steps mix first; none where all mix alike.
+    pub groups: Option<Groups>,
+    /// What turns the channels.
+    pub driven_by: Drive,
     /// All contacts, in the order of the file.
     pub contacts: Vec<Contact>,
     /// All gates, then all steps.
@@ -274,6 +278,38 @@ pub struct EdgeRules {
     pub opposite: Mixing,
 }
 
+/// Ladder steps of one sign that mix with one another before they mix with the rest. They act along rims and along borders
+/// between regions of one sign; between opposite signs all channels mix alike.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Groups {
+    /// Steps counted from 1 at the outermost channel; a step in no group is its own.
+    pub steps: Vec<Vec<usize>>,
+    /// Mixing between groups.
+    pub between: Mixing,
+}
+
+/// What sets the sense of the channels.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Drive {
+    /// The magnetic field; the sign of a filling is that of the carriers.
+    #[default]
+    Field,
+    /// The magnetisation; the sign of a filling is the sense of its channels, positive clockwise round an outer rim at
+    /// magnetisation toward the reader.
+    Magnetisation,
+}
+
+/// `modes` of a point: numbers of edge modes that follow every rim, in place of fillings.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct Modes {
+    /// Clockwise round an outer rim at `+`.
+    pub forward: i64,
+    /// Against them.
+    pub backward: i64,
+    /// λ: a stretch of rim of length L between contacts is a resistor (h/e²)(1 + L/λ). Only for one mode each way.
+    pub backscatter: Option<Nanometres>,
+}
+
 /// `[[point]]`: a field magnitude and the fillings that it sets.
 #[derive(Clone, Debug, PartialEq)]
 pub struct OperatingPoint {
@@ -281,7 +317,7 @@ pub struct OperatingPoint {
     pub name: String,
     /// Field magnitude in T.
     pub field_t: Option<f64>,
-    /// Filling of the ungated mesa, signed.
+    /// Filling of the ungated mesa, signed; zero where `modes` stand in its place.
     pub bulk: Rational,
     /// Fillings by set of overlays (sorted, no repeats): `TG`, `TG+BG`.
     pub fillings: Vec<(Vec<OverlayIdx>, Rational)>,
@@ -289,6 +325,8 @@ pub struct OperatingPoint {
     pub gates_v: Vec<(OverlayIdx, f64)>,
     /// Mixing rules in use at this point: `[edge]` with the point's own entries put in.
     pub edge: EdgeRules,
+    /// Counter-running edge modes in place of fillings.
+    pub modes: Option<Modes>,
     /// Where the table stands.
     pub place: Place,
 }

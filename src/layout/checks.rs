@@ -19,6 +19,7 @@ use crate::layout::VertexIdx;
 use crate::layout::edges::Windings;
 use crate::layout::from_device::Outlines;
 use crate::layout::label::on_mesa;
+use crate::layout::transmissions;
 
 /// A device and all that was made of it.
 #[derive(Clone, Copy, Debug)]
@@ -54,6 +55,7 @@ pub(super) fn checks(drawn: &Drawn) -> Vec<Diagnostic> {
     let overlays = (0..drawn.device.overlays.len()).map(OverlayIdx).filter(|o| drawn.outlines.has(Owner::Overlay(*o)));
     found.extend(overlays.filter_map(|overlay| presence(drawn, overlay)));
     found.extend(drawn.device.points.iter().flat_map(|point| overlap_entries(drawn, point)));
+    found.extend(transmissions::checks(drawn.device, &drawn.layout.topology));
     found
 }
 

@@ -3,6 +3,7 @@
 use crate::device::Contact;
 use crate::device::ContactShape;
 use crate::device::Device;
+use crate::device::Drive;
 use crate::device::Edge;
 use crate::device::EdgeRules;
 use crate::device::Ladder;
@@ -32,6 +33,8 @@ pub(crate) fn bar(length_um: i64, width_um: i64) -> Device {
         layer: Layer::default(),
         mesa: Mesa { shape, snap: Nanometres(10), place: place(0) },
         edge: EdgeRules { rim: Mixing::None, interface: Mixing::None, opposite: Mixing::Full },
+        groups: None,
+        driven_by: Drive::Field,
         contacts: Vec::new(),
         overlays: Vec::new(),
         points: Vec::new(),
@@ -122,6 +125,7 @@ impl Device {
             fillings: fillings.iter().map(|(set, filling)| (cover(set), Rational::from(*filling))).collect(),
             gates_v: Vec::new(),
             edge: self.edge.clone(),
+            modes: None,
             place: place(300 + self.points.len()),
         });
         self

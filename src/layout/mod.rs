@@ -33,6 +33,7 @@ mod rim;
 mod rim_contacts;
 mod snap;
 mod strip;
+mod transmissions;
 
 #[cfg(test)]
 pub(crate) mod fixture;

@@ -3,6 +3,7 @@
 use std::collections::BTreeMap;
 
 use crate::cooldown::Names;
+use crate::device::Drive;
 use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Findings;
 use crate::diagnostic::Place;
@@ -144,10 +145,10 @@ impl Header {
             let name = column.name();
             missing(format!("the header has no column `{name}`"), format!("add a column `{name}`"))
         });
-        required.chain(self.direction()).chain(self.point(names))
+        required.chain(self.direction(names)).chain(self.point(names))
     }
 
-    fn direction(&self) -> Option<Diagnostic> {
+    fn direction(&self, names: &Names) -> Option<Diagnostic> {
         match (self.has(Column::Polarity), self.has(Column::Field)) {
             (false, false) => Some(missing(
                 "the header has neither `polarity` nor `field_T`".to_string(),
@@ -157,6 +158,13 @@ impl Header {
             (true, true) => Some(
                 Diagnostic::fault("two-polarities", "the header has both `polarity` and `field_T`")
                     .hint("keep one of them; the field's magnitude belongs to the point"),
+            ),
+            (false, true) if names.driven_by == Drive::Magnetisation => Some(
+                Diagnostic::fault(
+                    "no-polarity",
+                    "the sign of `field_T` does not say which way the magnetisation points",
+                )
+                .hint("write `polarity` in place of `field_T`: + is a magnetisation toward you"),
             ),
             _ => None,
         }

@@ -5,6 +5,7 @@ use std::collections::BTreeSet;
 
 use crate::network::Band;
 use crate::network::Carrier;
+use crate::network::FaceIdx;
 use crate::network::Operating;
 use crate::number::Rational;
 
@@ -20,8 +21,13 @@ pub(super) fn bands(operating: &Operating) -> Vec<Band> {
     all
 }
 
-/// |ν| of a face for one carrier: zero where the face holds the other carrier or none.
-pub(super) fn level(filling: &Rational, carrier: Carrier) -> Rational {
+/// |ν| of a face for one carrier: zero where the face holds the other carrier or none. Edge modes are as many on every
+/// face of the mesa, each way.
+pub(super) fn level(operating: &Operating, face: FaceIdx, carrier: Carrier) -> Rational {
+    if carrier == Carrier::Hole && !operating.backward.is_empty() {
+        return operating.backward[face.0].clone();
+    }
+    let filling = &operating.fillings[face.0];
     match (carrier, filling.is_negative()) {
         (Carrier::Electron, false) | (Carrier::Hole, true) => filling.abs(),
         _ => Rational::ZERO,
@@ -55,7 +61,9 @@ fn cuts(operating: &Operating, carrier: Carrier) -> Vec<Rational> {
         Carrier::Electron => Rational::ONE,
         Carrier::Hole => -Rational::ONE,
     };
-    operating.ladder.steps(&sign).take(listed.max(grouped).unwrap_or(0)).collect()
+    let highest = faces(operating).map(|face| level(operating, face, carrier)).max().unwrap_or_default();
+    let steps = operating.ladder.steps(&sign).take_while(|step| *step < highest);
+    steps.take(listed.max(grouped).unwrap_or(0)).collect()
 }
 
 /// Values of |ν| at which a band ends: those that occur, those that enclose a partial one and those that end a ladder
@@ -66,7 +74,7 @@ fn thresholds(
     enclosing: &[(Rational, Rational)],
     cuts: &[Rational],
 ) -> BTreeSet<Rational> {
-    let mut ends: BTreeSet<Rational> = operating.fillings.iter().map(|filling| level(filling, carrier)).collect();
+    let mut ends: BTreeSet<Rational> = faces(operating).map(|face| level(operating, face, carrier)).collect();
     let highest = ends.last().cloned().unwrap_or_default();
     ends.extend(enclosing.iter().flat_map(|(lower, upper)| [lower.clone(), upper.clone()]));
     ends.extend(cuts.iter().cloned());
@@ -74,8 +82,12 @@ fn thresholds(
 }
 
 fn enclosing_steps(operating: &Operating, carrier: Carrier) -> Vec<(Rational, Rational)> {
-    let faces = operating.fillings.iter().zip(&operating.enclosing);
-    faces.filter(|(filling, _)| !level(filling, carrier).is_zero()).filter_map(|(_, steps)| steps.clone()).collect()
+    let held = faces(operating).filter(|face| !level(operating, *face, carrier).is_zero());
+    held.filter_map(|face| operating.enclosing[face.0].clone()).collect()
+}
+
+fn faces(operating: &Operating) -> impl Iterator<Item = FaceIdx> {
+    (0..operating.fillings.len()).map(FaceIdx)
 }
 
 /// The lower end of the ladder step to which a band belongs; a band outside all partial steps is its own.

@@ -5,6 +5,7 @@ use crate::device::EdgeRules;
 use crate::device::Ladder;
 use crate::device::LadderPlace;
 use crate::device::Mixing;
+use crate::device::Modes;
 use crate::device::OperatingPoint;
 use crate::device::OverlayIdx;
 use crate::layout::FaceLabel;
@@ -35,8 +36,13 @@ pub fn network(layout: &Layout, contacts: usize) -> Network {
 pub fn operating(network: &Network, device: &Device, point: &OperatingPoint, polarity: Polarity) -> Operating {
     let faces = &network.topology.faces;
     let fillings: Vec<Rational> = faces.iter().map(|label| filling(label, point)).collect();
+    let groups = device.groups.as_ref().filter(|_| point.modes.is_none());
+    let backward = |modes: Modes| faces.iter().map(|label| modes_of(label, modes.backward)).collect();
     Operating {
-        enclosing: fillings.iter().map(|filling| enclosing(&device.ladder, filling)).collect(),
+        enclosing: match point.modes {
+            Some(_) => vec![None; fillings.len()],
+            None => fillings.iter().map(|filling| enclosing(&device.ladder, filling)).collect(),
+        },
         ladder: device.ladder.clone(),
         coupling: network
             .topology
@@ -44,7 +50,8 @@ pub fn operating(network: &Network, device: &Device, point: &OperatingPoint, pol
             .iter()
             .map(|piece| coupling(piece, network, device, (point, &fillings)))
             .collect(),
-        groups: Vec::new(),
+        groups: groups.map_or_else(Vec::new, |groups| groups.steps.clone()),
+        backward: point.modes.map_or_else(Vec::new, backward),
         transmission: device.contacts.iter().map(|contact| contact.transmission.clone()).collect(),
         fillings,
         polarity,
@@ -62,7 +69,17 @@ pub fn channels(network: &Network, operating: &Operating) -> Channels {
     assemble(bands, paths, (network, operating))
 }
 
+fn modes_of(label: &FaceLabel, modes: i64) -> Rational {
+    match label {
+        FaceLabel::Mesa(_) => Rational::from(modes),
+        FaceLabel::Vacuum | FaceLabel::Contact(_) => Rational::ZERO,
+    }
+}
+
 fn filling(label: &FaceLabel, point: &OperatingPoint) -> Rational {
+    if let Some(modes) = point.modes {
+        return modes_of(label, modes.forward);
+    }
     match label {
         FaceLabel::Mesa(cover) => point.filling(cover).unwrap_or(&point.bulk).clone(),
         FaceLabel::Vacuum | FaceLabel::Contact(_) => Rational::ZERO,
@@ -82,16 +99,23 @@ fn coupling(
     device: &Device,
     (point, fillings): (&OperatingPoint, &[Rational]),
 ) -> Coupling {
+    if let Some(modes) = point.modes {
+        return modes.backscatter.map_or(Coupling::Alike(Mixing::None), Coupling::Backscatter);
+    }
     let EdgeRules { rim, interface, opposite } = &point.edge;
     let (left, right) = (&fillings[piece.left.0], &fillings[piece.right.0]);
     let own = own_mixing(piece, &network.topology, device);
+    let is_one_sign = !(left * right).is_negative();
     let rule = match border(piece, &network.topology) {
         Border::Rim => rim,
-        Border::Inner if (left * right).is_negative() => own.unwrap_or(opposite),
+        Border::Inner if !is_one_sign => own.unwrap_or(opposite),
         Border::Inner => own.unwrap_or(interface),
-        Border::Contact => &Mixing::None,
+        Border::Contact => return Coupling::Alike(Mixing::None),
     };
-    Coupling::Alike(rule.clone())
+    match (&device.groups, is_one_sign) {
+        (Some(groups), true) => Coupling::Grouped { within: rule.clone(), between: groups.between.clone() },
+        _ => Coupling::Alike(rule.clone()),
+    }
 }
 
 enum Border {

@@ -27,7 +27,7 @@ pub(super) struct Path {
 /// All paths of a band, appended to `paths`.
 pub(super) fn append_paths(paths: &mut Vec<Path>, topology: &Topology, operating: &Operating, band: (BandIdx, &Band)) {
     let (index, band) = band;
-    let holds = |face: FaceIdx| level(&operating.fillings[face.0], band.carrier) >= band.to;
+    let holds = |face: FaceIdx| level(operating, face, band.carrier) >= band.to;
     let hand = hand(band.carrier, operating.polarity);
     let walker = Walker { topology, inside: holds, hand };
     let with_contacts = Walker { topology, inside: |face| holds(face) || contact(topology, face).is_some(), hand };

@@ -53,12 +53,23 @@ pub struct Operating {
     pub coupling: Vec<Coupling>,
     /// Ladder steps that mix with one another, counted from 1 at the outermost; a step in none is its own.
     pub groups: Vec<Vec<usize>>,
+    /// Where edge modes stand in place of fillings: `fillings` holds the forward modes of every face, this the backward
+    /// ones. Empty elsewhere.
+    pub backward: Vec<Rational>,
     /// Transmission of every contact, outermost ladder step first (the last value repeats).
     pub transmission: Vec<Vec<Rational>>,
     /// Polarity of the field.
     pub polarity: Polarity,
     /// In which numbers to solve.
     pub arithmetic: Arithmetic,
+}
+
+impl Operating {
+    /// The same in fractions, with another rule wherever a length enters.
+    pub fn without_lengths(&self, rule: &Mixing) -> Self {
+        let coupling = self.coupling.iter().map(|coupling| coupling.without_length(rule)).collect();
+        Self { coupling, arithmetic: Arithmetic::Exact, ..self.clone() }
+    }
 }
 
 /// What channels that run along one piece do to one another.
@@ -115,7 +126,8 @@ pub struct BandIdx(pub usize);
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
 pub struct BundleIdx(pub usize);
 
-/// Carrier of a channel: the sign of the filling.
+/// Carrier of a channel: the sign of the filling. Edge modes count as electrons where they run as those do, forward, and as
+/// holes where they run backward.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
 pub enum Carrier {
     /// ν > 0.
@@ -177,6 +189,13 @@ pub struct CourseStep {
     pub bundle: BundleIdx,
     /// The bundle in which it leaves the piece: another one where potentials change along it.
     pub leaving: BundleIdx,
+}
+
+impl CourseStep {
+    /// Whether the potential changes along the piece.
+    pub fn is_changed(&self) -> bool {
+        self.leaving != self.bundle
+    }
 }
 
 /// Where a share of a bundle's potential comes from.

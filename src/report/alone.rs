@@ -79,7 +79,7 @@ pub fn value(expected: &Expected) -> String {
     let printed = |ohm: Option<f64>| ohm.map(|ohm| Printed::kilo_ohm(ohm, 4));
     let (device, shown) = (printed(expected.ohm), printed(expected.shown_ohm));
     let form = expected.formula.as_deref().map(|form| format!("h/e² × ({})", names::formula(form)));
-    let exact = expected.exact.as_ref().map(|exact| Printed::exact(exact).with_unit());
+    let exact = expected.number().map(|number| Printed::h_per_e2(&number).with_unit());
     let parts: Vec<String> = form.or(exact).into_iter().chain(device.as_ref().map(Printed::with_unit)).collect();
     let text = format!("= {}", parts.join(" = "));
     match (device, shown) {

@@ -69,13 +69,10 @@ fn measured(sources: &Sources, row: &Row, budget: &Budget, texts: &TableTexts) -
 }
 
 fn heading(sources: &Sources, reading: &Reading, (point, polarity): (usize, Polarity)) -> String {
-    let field = match polarity {
-        Polarity::Toward => "field toward you",
-        Polarity::Away => "field away",
-    };
+    let side = names::side(sources.device, polarity);
     let point = sources.points.get(point).filter(|_| sources.points.len() > 1);
     let point = point.map(|point| format!(", {}", point.point.name)).unwrap_or_default();
-    format!("{}, {field}{point}", names::reading_name(sources.device, reading))
+    format!("{}, {side}{point}", names::reading_name(sources.device, reading))
 }
 
 fn table(

@@ -23,6 +23,7 @@ use crate::report::effects;
 use crate::report::identity;
 use crate::report::instruments;
 use crate::report::mixed;
+use crate::report::names;
 use crate::report::small_table::TableTexts;
 use crate::report::table;
 use crate::report::verdict;
@@ -33,7 +34,8 @@ const FORMAT: u32 = 1;
 
 /// Every table and sentence of a sheet. A fault means that a template part cannot be filled.
 pub fn build(sources: &Sources) -> Result<Report, Diagnostic> {
-    let (texts, words, tables) = (Texts::built_in()?, Words::built_in()?, TableTexts::built_in()?);
+    let driver = names::driver(sources.device);
+    let (texts, words, tables) = (Texts::built_in(driver)?, Words::built_in(driver)?, TableTexts::built_in(driver)?);
     let points = sources.points.iter().enumerate();
     let points = points.map(|(index, point)| point_report(sources, (index, point), (&texts, &tables), &words));
     let points = points.collect::<Result<Vec<_>, _>>()?;
@@ -66,6 +68,10 @@ struct TableFields {
     circuit: bool,
     repeated: bool,
     formless: bool,
+    /// Path lengths enter at this point.
+    lengths: bool,
+    /// Edge modes stand in place of fillings.
+    modes: bool,
 }
 
 fn point_report(
@@ -81,7 +87,9 @@ fn point_report(
     let alone = alone::rules(sources.device, point);
     let all = point.toward.expected.iter().chain(&point.away.expected).chain(measured.iter().map(|row| &row.expected));
     let circuit = all.into_iter().any(|expected| expected.shown_ohm != expected.ohm);
-    let fields = TableFields { circuit, ..table_fields(&rows) };
+    let lengths = point.toward.conductance.exact().is_none();
+    let modes = point.point.modes.is_some();
+    let fields = TableFields { circuit, lengths, modes, ..table_fields(&rows) };
     let charts = if fields.measured { charted::ranges(rows.len()) } else { Vec::new() };
     let mut notes = texts.lines("table.txt", &fields)?.into_iter();
     Ok(PointReport {
@@ -114,12 +122,14 @@ fn table_fields(rows: &[TableRow]) -> TableFields {
         circuit: false,
         repeated: rows.windows(2).any(|pair| pair[0].name == pair[1].name),
         formless: rows.iter().any(is_formless),
+        lengths: false,
+        modes: false,
     }
 }
 
 /// Whether a row has a number and, at a polarity where it has one, no closed form.
 fn is_formless(row: &TableRow) -> bool {
-    let numbers = [&row.toward, &row.away].into_iter().any(|cell| cell.exact.is_some());
+    let numbers = [&row.toward, &row.away].into_iter().any(|cell| cell.device.is_some());
     numbers && row.formula.as_ref().is_none_or(|formula| formula.contains('–'))
 }
 

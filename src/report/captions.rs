@@ -88,13 +88,19 @@ struct PenFields<'a> {
     outlet: &'a str,
     path: bool,
     parallel: bool,
+    /// Potentials change along some border.
+    along: bool,
+    /// Gates are drawn beside edge modes.
+    idle_gates: bool,
 }
 
 impl<'a> PenFields<'a> {
     fn of(device: &'a Device, point: &PointSource) -> Self {
         let [inlet, outlet] = point.drawn_current.map(|contact| names::contact_name(device, contact));
         let path = point.toward.bundle_potentials(point.drawn_current).is_some();
-        Self { inlet, outlet, path, parallel: stands_for_many(point) }
+        let along = point.toward.channels.courses.iter().flat_map(|course| &course.steps).any(|step| step.is_changed());
+        let idle_gates = point.point.modes.is_some() && !device.overlays.is_empty();
+        Self { inlet, outlet, path, parallel: stands_for_many(point), along, idle_gates }
     }
 }
 
@@ -127,6 +133,9 @@ struct DrawingFields {
     away: bool,
     electrons: bool,
     holes: bool,
+    modes: bool,
+    forward: bool,
+    backward: bool,
     alone: Option<String>,
 }
 
@@ -143,6 +152,9 @@ fn drawing(
         away: polarity == Polarity::Away,
         electrons: carries(point.point, Rational::is_negative, false),
         holes: carries(point.point, Rational::is_negative, true),
+        modes: point.point.modes.is_some(),
+        forward: point.point.modes.is_some_and(|modes| modes.forward > 0),
+        backward: point.point.modes.is_some_and(|modes| modes.backward > 0),
         alone: rule.map(|(name, _)| name.to_string()),
     };
     let mut lines = texts.lines("drawing.txt", &fields)?.into_iter();
@@ -218,11 +230,14 @@ fn shares(point: &PointSource, prediction: &Prediction) -> Vec<String> {
     texts
 }
 
+/// Size in h/e², and relative difference, that only rounding makes.
+const ROUNDING: f64 = 1e-9;
+
 /// A reading with four distinct contacts whose two polarities differ in sign only.
 fn hall_check(device: &Device, point: &PointSource) -> Option<CheckFields> {
     let both = point.toward.expected.iter().zip(&point.away.expected);
-    let opposite = |(toward, away): &(&Expected, &Expected)| match (&toward.exact, &away.exact) {
-        (Some(toward), Some(away)) => !toward.is_zero() && *toward == -away.clone(),
+    let opposite = |(toward, away): &(&Expected, &Expected)| match (toward.h_per_e2, away.h_per_e2) {
+        (Some(toward), Some(away)) => toward.abs() > ROUNDING && (toward + away).abs() < ROUNDING * toward.abs(),
         _ => false,
     };
     let apart = |e: &Expected| e.reading.voltage.iter().all(|contact| !e.reading.current.contains(contact));

@@ -4,13 +4,16 @@ use std::path::Path;
 
 use serde::Serialize;
 
+use crate::device::Device;
 use crate::device::EdgeRules;
 use crate::device::Mixing;
+use crate::device::Overlay;
 use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Place;
 use crate::quantity::Constant;
 use crate::quantity::KLITZING;
 use crate::quantity::KLITZING_1990;
+use crate::quantity::Nanometres;
 use crate::quantity::printed;
 use crate::quantity::printed::as_given;
 use crate::report::Provenance;
@@ -19,7 +22,7 @@ use crate::report::Texts;
 
 /// Rules in use: sign, uncertainty, limit, mixing.
 pub fn rules(sources: &Sources, texts: &Texts) -> Result<Vec<String>, Diagnostic> {
-    let comparison = sources.comparison;
+    let (device, comparison) = (sources.device, sources.comparison);
     let factor = sources.cooldown.map_or(1.0, |cooldown| cooldown.coverage_factor);
     let fields = RuleFields {
         limit: comparison.and_then(|c| c.limit_u).map(|limit| printed::decimals(limit, 1)),
@@ -27,6 +30,11 @@ pub fn rules(sources: &Sources, texts: &Texts) -> Result<Vec<String>, Diagnostic
         judged: comparison.map_or(0, |comparison| comparison.judged),
         coverage_factor: (factor != 1.0).then(|| as_given(factor)),
         mixing: mixing(sources),
+        groups: device.groups.as_ref().map(|groups| groups.steps.iter().map(group).collect::<Vec<_>>().join(", ")),
+        between: device.groups.as_ref().map_or_else(String::new, |groups| mixing_word(&groups.between)),
+        lengths: mixings(device).any(|mixing| mixing.has_length()),
+        modes: device.points.iter().any(|point| point.modes.is_some()),
+        backscatter: backscatter(device),
     };
     texts.lines("rules.txt", &fields)
 }
@@ -88,6 +96,14 @@ struct RuleFields {
     judged: usize,
     coverage_factor: Option<String>,
     mixing: Vec<MixingFields>,
+    /// `1 with 3, 2 with 4`, and the mixing between them.
+    groups: Option<String>,
+    between: String,
+    /// Some rule is a length.
+    lengths: bool,
+    /// Edge modes stand in place of fillings at some point.
+    modes: bool,
+    backscatter: Option<String>,
 }
 
 #[derive(PartialEq, Serialize)]
@@ -96,6 +112,7 @@ struct MixingFields {
     rim: String,
     interface: String,
     opposite: String,
+    own: Vec<String>,
 }
 
 #[derive(Serialize)]
@@ -106,10 +123,39 @@ struct ProvenanceFields<'a> {
     version: &'a str,
 }
 
+/// All rules that points, gates and groups use.
+fn mixings(device: &Device) -> impl Iterator<Item = &Mixing> {
+    let filled = device.points.iter().filter(|point| point.modes.is_none());
+    let of_points = filled.flat_map(|point| [&point.edge.rim, &point.edge.interface, &point.edge.opposite]);
+    let own = device.overlays.iter().filter_map(|overlay| overlay.mixing.as_ref());
+    of_points.chain(own).chain(device.groups.as_ref().map(|groups| &groups.between))
+}
+
+/// `1 with 3`.
+fn group(steps: &Vec<usize>) -> String {
+    steps.iter().map(usize::to_string).collect::<Vec<_>>().join(" with ")
+}
+
+/// The lengths in use, `20 µm`.
+fn backscatter(device: &Device) -> Option<String> {
+    let modes = device.points.iter().filter_map(|point| point.modes);
+    let mut lengths: Vec<Nanometres> = modes.filter_map(|modes| modes.backscatter).collect();
+    lengths.sort();
+    lengths.dedup();
+    let texts: Vec<String> = lengths.iter().map(|length| format!("{} µm", as_given(length.to_um()))).collect();
+    (!texts.is_empty()).then(|| texts.join(", "))
+}
+
+/// Gates and steps that state a rule for their own borders.
+fn own(device: &Device) -> Vec<String> {
+    let stated = |overlay: &Overlay| Some(format!("{} {}", overlay.name, mixing_word(overlay.mixing.as_ref()?)));
+    device.overlays.iter().filter_map(stated).collect()
+}
+
 /// One entry per distinct rule, with the points that use it; no names where all use one.
 fn mixing(sources: &Sources) -> Vec<MixingFields> {
     let mut rules: Vec<(&EdgeRules, Vec<String>)> = Vec::new();
-    for point in &sources.device.points {
+    for point in sources.device.points.iter().filter(|point| point.modes.is_none()) {
         match rules.iter_mut().find(|(rule, _)| **rule == point.edge) {
             Some((_, points)) => points.push(point.name.clone()),
             None => rules.push((&point.edge, vec![point.name.clone()])),
@@ -121,6 +167,7 @@ fn mixing(sources: &Sources) -> Vec<MixingFields> {
         rim: mixing_word(&rule.rim),
         interface: mixing_word(&rule.interface),
         opposite: mixing_word(&rule.opposite),
+        own: own(sources.device),
     };
     rules.into_iter().map(fields).collect()
 }

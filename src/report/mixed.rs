@@ -16,43 +16,50 @@ const MOST: usize = 14;
 
 /// Every listed reading that differs with and without mixing at either polarity; none where none does.
 pub fn table(device: &Device, point: &PointSource, texts: &TableTexts) -> Option<SmallTable> {
-    let in_use = [point.toward, point.away].map(|prediction| prediction.expected.as_slice());
-    let other = point.beside.map(|beside| beside.other_mixing.as_slice());
-    let pairs = in_use[0].iter().zip(other[0]).zip(in_use[1].iter().zip(other[1]));
-    let differs = |(here, there): (&Expected, &Expected)| here.exact != there.exact;
-    let changed: Vec<_> = pairs.filter(|(toward, away)| differs(*toward) || differs(*away)).collect();
-    let full = point.point.edge.rim == Mixing::Full;
-    let ordered = |(here, there): (&Expected, &Expected)| {
-        let cells = [here, there].map(cell);
-        if full {
-            let [here, there] = cells;
-            [there, here]
-        } else {
-            cells
-        }
+    let [toward, away] = point.beside.map(|beside| beside.unmixed.iter().zip(&beside.mixed));
+    let differs = |(unmixed, mixed): (&Expected, &Expected)| match (unmixed.h_per_e2, mixed.h_per_e2) {
+        (Some(unmixed), Some(mixed)) => (unmixed - mixed).abs() > ROUNDING,
+        (unmixed, mixed) => unmixed != mixed,
     };
+    let changed: Vec<_> = toward.zip(away).filter(|(toward, away)| differs(*toward) || differs(*away)).collect();
     let row = |(toward, away): &((&Expected, &Expected), (&Expected, &Expected))| {
         let name = SmallCell::text(names::reading_name(device, &toward.0.reading));
-        [name].into_iter().chain(ordered(*toward)).chain(ordered(*away)).collect::<Vec<_>>()
+        let cells = [toward.0, toward.1, away.0, away.1].map(cell);
+        [name].into_iter().chain(cells).collect::<Vec<_>>()
     };
     let table = texts.mixing.table(changed.iter().take(MOST).map(row).collect());
-    (!changed.is_empty()).then(|| SmallTable { notes: notes(full, changed.len()), ..table })
+    (!changed.is_empty()).then(|| SmallTable { notes: notes(&point.point.edge.rim, changed.len()), ..table })
 }
 
-fn notes(full: bool, count: usize) -> Vec<String> {
-    let (used, other) = if full { ("full", "none") } else { ("none", "full") };
-    let rule = format!(
-        "h/e² and kΩ of the device alone. In use: mixing = \"{used}\" along the rim. If the device behaves as in the other \
-         columns, write mixing = \"{other}\" under [edge], or at the point."
-    );
+/// Difference in h/e² that only rounding makes.
+const ROUNDING: f64 = 1e-9;
+
+fn notes(rim: &Mixing, count: usize) -> Vec<String> {
+    const ADVICE: &str = "If the device behaves as in the other columns, write";
+    let used = match rim {
+        Mixing::None => format!(
+            "In use: mixing = \"none\" along the rim. {ADVICE} mixing = \"full\" under [edge], or at the point."
+        ),
+        Mixing::Full => format!(
+            "In use: mixing = \"full\" along the rim. {ADVICE} mixing = \"none\" under [edge], or at the point."
+        ),
+        Mixing::Over(length) => format!(
+            "In use: mixing over ℓ = {} µm along the rim, with values between the two that stand in the table of readings.",
+            printed::as_given(length.to_um())
+        ),
+    };
     let left = (count > MOST).then(|| format!("{} more readings differ.", count - MOST));
-    std::iter::once(rule).chain(left).collect()
+    [format!("h/e² and kΩ of the device alone. {used}"), UNMIXED.to_owned()].into_iter().chain(left).collect()
 }
+
+/// What keeps a channel at its level; common practice.
+const UNMIXED: &str = "Without mixing every channel keeps its level from one gate or contact to the next: gate edges \
+                       smoother than about five magnetic lengths, and no scatterers on the way.";
 
 fn cell(expected: &Expected) -> SmallCell {
-    let number = expected.exact.as_ref().zip(expected.ohm).map(|(exact, ohm)| {
+    let number = expected.number().zip(expected.ohm).map(|(number, ohm)| {
         let kilo_ohm = Printed::kilo_ohm(ohm, 4);
-        Printed { text: format!("{} = {}", printed::fraction(exact), kilo_ohm.text), ..kilo_ohm }
+        Printed { text: format!("{} = {}", Printed::h_per_e2(&number).text, kilo_ohm.text), ..kilo_ohm }
     });
     SmallCell::number(number)
 }

@@ -65,8 +65,8 @@ pub use sources::preferred;
 pub use started::NEVER_REPLACED;
 pub use started::started;
 pub use table_text::IsolatedPoint;
-pub use table_text::any_has_region;
 pub use table_text::expected_table;
+pub use table_text::is_region;
 pub use table_text::isolated_table;
 pub use table_text::region_called;
 pub use table_text::unknown_region;
@@ -254,7 +254,7 @@ pub struct TableRow {
 /// One reading at one polarity.
 #[derive(Clone, Debug, Default, PartialEq, Serialize)]
 pub struct Cell {
-    /// Exact value in h/e².
+    /// Value in h/e², exact where no path length enters.
     pub exact: Option<Printed>,
     /// The device alone, in kΩ.
     pub device: Option<Printed>,

@@ -2,7 +2,10 @@
 
 use crate::device::ContactIdx;
 use crate::device::Device;
+use crate::device::Drive;
+use crate::device::Modes;
 use crate::device::OperatingPoint;
+use crate::quantity::Polarity;
 use crate::quantity::printed::as_given;
 use crate::report::printed::filling;
 use crate::resistance::Reading;
@@ -62,8 +65,36 @@ fn counts_on(before: &str, after: &str) -> bool {
     }
 }
 
-/// `filling 3 with 1 under TG`; overlaps as `TG+BG`.
+/// What turns the channels, in a word.
+pub fn driver(device: &Device) -> &'static str {
+    match device.driven_by {
+        Drive::Field => "field",
+        Drive::Magnetisation => "magnetisation",
+    }
+}
+
+/// `field toward you`, `magnetisation away`.
+pub fn side(device: &Device, polarity: Polarity) -> String {
+    let way = match polarity {
+        Polarity::Toward => "toward you",
+        Polarity::Away => "away",
+    };
+    format!("{} {way}", driver(device))
+}
+
+/// `1 forward and 1 backward edge mode, backscattering over 20 µm`.
+fn modes(modes: &Modes) -> String {
+    let Modes { forward, backward, backscatter } = modes;
+    let plural = if forward + backward == 1 { "mode" } else { "modes" };
+    let over = backscatter.map(|length| format!(", backscattering over {} µm", as_given(length.to_um())));
+    format!("edge {plural}: {forward} forward, {backward} backward{}", over.unwrap_or_default())
+}
+
+/// `filling 3 with 1 under TG`; overlaps as `TG+BG`; `edge modes: 1 forward, 1 backward`.
 pub fn fillings(device: &Device, point: &OperatingPoint) -> String {
+    if let Some(of_point) = &point.modes {
+        return modes(of_point);
+    }
     let under = point.fillings.iter().map(|(cover, value)| {
         let names: Vec<&str> =
             cover.iter().filter_map(|overlay| device.overlays.get(overlay.0)).map(|o| o.name.as_str()).collect();

@@ -2,6 +2,7 @@
 
 use serde::Serialize;
 
+use crate::number::Number;
 use crate::number::Rational;
 use crate::quantity::Uncertain;
 use crate::quantity::printed;
@@ -24,6 +25,14 @@ impl Printed {
     /// An exact value in h/e².
     pub fn exact(value: &Rational) -> Self {
         Self { text: printed::fraction(value), value: value.to_f64(), u: None, unit: "h/e²" }
+    }
+
+    /// A value in h/e²: exact, or with five decimals.
+    pub fn h_per_e2(value: &Number) -> Self {
+        match value {
+            Number::Exact(exact) => Self::exact(exact),
+            Number::Float(value) => Self { text: printed::h_per_e2(*value), value: *value, u: None, unit: "h/e²" },
+        }
     }
 
     /// A resistance in Ω, printed in kΩ with so many decimals.

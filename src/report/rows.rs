@@ -16,6 +16,9 @@ use crate::resistance::ReadingState;
 /// The strip beside a difference reaches from −3 u to +3 u.
 const STRIP_REACH_U: f64 = 3.0;
 
+/// Value in h/e² that only rounding makes.
+const NOTHING: f64 = 1e-12;
+
 /// One reading with what is known of it at one polarity.
 #[derive(Clone, Copy, Debug, Default)]
 pub struct Side<'a> {
@@ -106,7 +109,7 @@ fn cell(side: Side, words: &Words, decimals: usize) -> Cell {
     let expected = side.row.map(|row| &row.expected).or(side.expected);
     let shown = expected.and_then(|expected| expected.shown_ohm.or(expected.ohm));
     Cell {
-        exact: expected.and_then(|expected| expected.exact.as_ref()).map(Printed::exact),
+        exact: expected.and_then(Expected::number).as_ref().map(Printed::h_per_e2),
         device: expected.and_then(|expected| expected.ohm).map(|ohm| Printed::kilo_ohm(ohm, decimals)),
         quadrature: expected
             .and_then(|expected| expected.shown_quadrature_ohm)
@@ -137,7 +140,7 @@ fn measured_cell(row: &Row, words: &Words) -> Cell {
 }
 
 fn is_zero(expected: &Expected) -> bool {
-    expected.exact.as_ref().is_some_and(|exact| exact.is_zero())
+    expected.h_per_e2.is_some_and(|value| value.abs() < NOTHING)
 }
 
 fn strip(difference_in_u: f64) -> Strip {

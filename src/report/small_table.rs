@@ -127,9 +127,9 @@ pub struct PartNames {
 }
 
 impl TableTexts {
-    /// The built-in words. A fault means that the part is no valid TOML or lacks a word.
-    pub fn built_in() -> Result<Self, Diagnostic> {
-        toml::from_str(include_str!("../../templates/tables.toml"))
+    /// The built-in words for channels turned by `driver`: `field`, `magnetisation`. A fault means that the part is no valid TOML or lacks a word.
+    pub fn built_in(driver: &str) -> Result<Self, Diagnostic> {
+        toml::from_str(&include_str!("../../templates/tables.toml").replace("{driver}", driver))
             .map_err(|error| Diagnostic::fault("template", format!("the part “tables.toml” cannot be read: {error}")))
     }
 }

@@ -68,14 +68,16 @@ pub struct RowSource {
     pub corrections: Vec<Correction>,
 }
 
-/// What is known of a point at one polarity beside its solution. `other_mixing` and `corrections` hold one per
+/// What is known of a point at one polarity beside its solution. `unmixed`, `mixed` and `corrections` hold one per
 /// reading.
 #[derive(Clone, Debug, Default)]
 pub struct Beside {
     /// One per region with a filling of its own, the bulk left out, in the order of the closed forms.
     pub isolated: Vec<IsolatedRegion>,
-    /// What is expected with the other mixing along the rim: full where none is in use, none where full is.
-    pub other_mixing: Vec<Expected>,
+    /// The readings without mixing along the rim.
+    pub unmixed: Vec<Expected>,
+    /// The same with full mixing along the rim.
+    pub mixed: Vec<Expected>,
     /// What each part of the circuit does alone.
     pub corrections: Vec<Vec<Correction>>,
     /// The first two-terminal reading with the uncertainty of what is expected of it.

@@ -5,7 +5,6 @@ use crate::cooldown::Cooldown;
 use crate::device::Device;
 use crate::device::OverlayKind;
 use crate::measured::MeasuredReading;
-use crate::quantity::Polarity;
 use crate::quantity::printed::as_given;
 use crate::report::Sources;
 use crate::report::identity::date;
@@ -77,10 +76,7 @@ fn note(day: Option<&str>, text: &str) -> String {
 fn reading_note(device: &Device, row: &MeasuredReading) -> Option<String> {
     let text = row.note.as_ref()?;
     let name = names::reading_name(device, &Reading::new(row.current, row.voltage));
-    let side = match row.polarity {
-        Polarity::Toward => "field toward you",
-        Polarity::Away => "field away",
-    };
+    let side = names::side(device, row.polarity);
     let point = device.points.get(row.point).filter(|_| device.points.len() > 1);
     let at = point.map(|point| format!(", {}", point.name)).unwrap_or_default();
     Some(format!("{name}, {side}{at}: {text}"))

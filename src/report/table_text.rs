@@ -2,8 +2,10 @@
 
 use std::collections::BTreeSet;
 
+use crate::conductance::Conductance;
 use crate::cooldown::Cooldown;
 use crate::device::Device;
+use crate::device::Drive;
 use crate::device::OperatingPoint;
 use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Faults;
@@ -12,8 +14,10 @@ use crate::quantity::Polarity;
 use crate::quantity::printed;
 use crate::report::SolvedPoint;
 use crate::report::identity::point_line;
+use crate::report::names;
 use crate::report::names::leads;
 use crate::report::names::plain_name;
+use crate::report::names::side;
 use crate::report::state_words;
 use crate::resistance::ClosedForms;
 use crate::resistance::Expected;
@@ -31,10 +35,10 @@ pub fn expected_table(device: &Device, cooldown: Option<&Cooldown>, solved: &[So
             text.push_str(&point_table(device, cooldown, toward, away));
         }
     }
-    text.push_str(&closing(cooldown));
-    if solved.iter().flat_map(|point| &point.prediction.expected).any(is_formless) {
-        text.push_str(FORMLESS);
-    }
+    text.push_str(&closing(device, cooldown));
+    let formless = solved.iter().filter(|solved| solved.prediction.expected.iter().any(is_formless));
+    let reasons: BTreeSet<&str> = formless.map(reason).collect();
+    reasons.into_iter().for_each(|reason| text.push_str(reason));
     text
 }
 
@@ -42,18 +46,31 @@ pub fn expected_table(device: &Device, cooldown: Option<&Cooldown>, solved: &[So
 const FORMLESS: &str = "\u{2013}: no closed form; within this ordering of the fillings the reading is no sum of \
                         a/\u{3bd}.\n";
 
-fn is_formless(expected: &Expected) -> bool {
-    expected.exact.is_some() && expected.formula.is_none()
+/// Why the readings of a point that have no closed form have none.
+fn reason(solved: &SolvedPoint) -> &'static str {
+    match (solved.point.modes, &solved.prediction.conductance) {
+        (Some(_), Conductance::Exact(_)) => "\u{2013}: no closed form; edge modes have no fillings.\n",
+        (_, Conductance::Float(_)) => "\u{2013}: no closed form; the reading depends on path lengths.\n",
+        _ => FORMLESS,
+    }
 }
 
-pub(super) fn closing(cooldown: Option<&Cooldown>) -> String {
+fn is_formless(expected: &Expected) -> bool {
+    expected.h_per_e2.is_some() && expected.formula.is_none()
+}
+
+pub(super) fn closing(device: &Device, cooldown: Option<&Cooldown>) -> String {
     let klitzing = printed::significant(KLITZING.value, 12);
+    let driver = match device.driven_by {
+        Drive::Field => "Field",
+        Drive::Magnetisation => "Magnetisation",
+    };
     let meters = match cooldown {
         Some(_) => "\"shows\": what the first meter shows behind this cooldown's lines.\n",
         None => "",
     };
     format!(
-        "{meters}Field +: out of the chip face, toward you. R_ij,kl = (V_k - V_l)/I, current in at i and out at j.\n\
+        "{meters}{driver} +: out of the chip face, toward you. R_ij,kl = (V_k - V_l)/I, current in at i and out at j.\n\
          h/e\u{b2} = {klitzing} \u{3a9} (exact h and e of the SI, 2019).\n"
     )
 }
@@ -65,7 +82,8 @@ fn point_table(device: &Device, cooldown: Option<&Cooldown>, toward: &SolvedPoin
     let mut table = vec![("reading".to_owned(), heads, "closed form, + | \u{2212}".to_owned())];
     let pairs = toward.prediction.expected.iter().zip(&away.prediction.expected).zip(&toward.names);
     table.extend(pairs.map(|((plus, minus), name)| reading_row(device, name.as_deref(), (plus, minus), shows)));
-    let columns = "the first columns hold for the field toward you (+), the next for the field away (\u{2212})";
+    let driver = names::driver(device);
+    let columns = format!("the first columns hold for the {driver} toward you (+), the next for the {driver} away (−)");
     format!("{}\n{columns}\n{}\n\n", heading(device, toward.point), aligned(&table).join("\n"))
 }
 
@@ -96,7 +114,11 @@ fn cells(expected: &Expected, shows: bool) -> Vec<String> {
         cells.extend(shows.then(|| "\u{2013}".to_owned()));
         return cells;
     }
-    let exact = expected.exact.as_ref().map_or(String::new(), printed::fraction);
+    let exact = expected.h_per_e2.map(|value| match &expected.exact {
+        Some(exact) => printed::fraction(exact),
+        None => printed::h_per_e2(value),
+    });
+    let exact = exact.unwrap_or_default();
     let kilo_ohm = |ohm: Option<f64>| ohm.map_or("\u{2013}".to_owned(), printed::kilo_ohm);
     let mut cells = vec![exact, kilo_ohm(expected.ohm)];
     cells.extend(shows.then(|| kilo_ohm(expected.shown_ohm)));
@@ -180,10 +202,16 @@ pub fn region_called(forms: &ClosedForms, name: &str) -> Option<usize> {
     forms.regions().iter().position(|region| named(&region.name))
 }
 
-/// Whether the region that was asked for has a filling of its own at any point.
-pub fn any_has_region(lists: &[IsolatedPoint]) -> bool {
-    lists.iter().any(|list| list.found.is_some())
+/// Whether the region that was asked for has a filling of its own at any point, or is a part of a device that has edge
+/// modes in place of fillings.
+pub fn is_region(device: &Device, lists: &[IsolatedPoint], name: &str) -> bool {
+    let modes = device.points.iter().any(|point| point.modes.is_some());
+    let named = name == BULK || device.overlays.iter().any(|overlay| overlay.name == name);
+    lists.iter().any(|list| list.found.is_some()) || modes && named
 }
+
+/// The ungated mesa, as closed forms call it.
+const BULK: &str = "bulk";
 
 /// No point has a region of this name; `known` are those that there are.
 pub fn unknown_region(name: &str, known: &BTreeSet<String>) -> Faults {
@@ -202,7 +230,10 @@ pub fn isolated_table(device: &Device, lists: &[IsolatedPoint], region: &str, al
         let Some(first) = both.first() else { continue };
         text.push_str(&format!("{}\n", heading(device, first.point)));
         if both.iter().all(|list| list.found.is_none()) {
-            text.push_str(&format!("{region} has no filling of its own at this point\n\n"));
+            text.push_str(&match first.point.modes {
+                Some(_) => format!("{region} has no filling at this point: edge modes follow the rim alone\n\n"),
+                None => format!("{region} has no filling of its own at this point\n\n"),
+            });
             continue;
         }
         text.push_str(&rules(device, both, region));
@@ -212,13 +243,6 @@ pub fn isolated_table(device: &Device, lists: &[IsolatedPoint], region: &str, al
         text.push('\n');
     }
     text
-}
-
-pub(super) fn side(polarity: Polarity) -> &'static str {
-    match polarity {
-        Polarity::Toward => "field toward you",
-        Polarity::Away => "field away",
-    }
 }
 
 /// The rules of both polarities on one line, or on lines of their own where names are long.
@@ -234,7 +258,7 @@ fn rules(device: &Device, both: &[IsolatedPoint], region: &str) -> String {
 
 fn rule(device: &Device, list: &IsolatedPoint) -> String {
     let best = list.found.iter().flatten().next().map(|(entry, _)| leads(device, &entry.reading));
-    format!("{}: {}", side(list.polarity), best.unwrap_or_else(|| "no reading shows it alone".to_owned()))
+    format!("{}: {}", side(device, list.polarity), best.unwrap_or_else(|| "no reading shows it alone".to_owned()))
 }
 
 fn isolated_rows(device: &Device, list: &IsolatedPoint, most: usize) -> String {
@@ -249,5 +273,5 @@ fn isolated_rows(device: &Device, list: &IsolatedPoint, most: usize) -> String {
     let table: Vec<TableLine> = found.iter().take(most).map(line).collect();
     let left = found.len().saturating_sub(most);
     let more = if left > 0 { format!("  and {left} more (--all)\n") } else { String::new() };
-    format!("{} ({})\n{}\n{more}", side(list.polarity), list.polarity.sign(), aligned(&table).join("\n"))
+    format!("{} ({})\n{}\n{more}", side(device, list.polarity), list.polarity.sign(), aligned(&table).join("\n"))
 }

@@ -7,7 +7,10 @@ use tera::Tera;
 use crate::diagnostic::Diagnostic;
 
 /// The parts of a sheet's text, each replaceable on its own.
-pub struct Texts(Tera);
+pub struct Texts {
+    parts: Tera,
+    driver: &'static str,
+}
 
 /// Every part with its built-in text.
 const PARTS: [(&str, &str); 17] = [
@@ -31,17 +34,19 @@ const PARTS: [(&str, &str); 17] = [
 ];
 
 impl Texts {
-    /// The built-in parts. A fault means that a part is no valid template.
-    pub fn built_in() -> Result<Self, Diagnostic> {
+    /// The built-in parts for channels turned by `driver`: `field`, `magnetisation`. A fault means that a part is no valid
+    /// template.
+    pub fn built_in(driver: &'static str) -> Result<Self, Diagnostic> {
         let mut tera = Tera::default();
         tera.add_raw_templates(PARTS).map_err(|error| fault("templates", &error))?;
-        Ok(Self(tera))
+        Ok(Self { parts: tera, driver })
     }
 
     /// The lines of a part, one entry per line that is not blank.
     pub fn lines<T: Serialize>(&self, part: &str, fields: &T) -> Result<Vec<String>, Diagnostic> {
-        let context = Context::from_serialize(fields).map_err(|error| fault(part, &error))?;
-        let text = self.0.render(part, &context).map_err(|error| fault(part, &error))?;
+        let mut context = Context::from_serialize(fields).map_err(|error| fault(part, &error))?;
+        context.insert("driver", self.driver);
+        let text = self.parts.render(part, &context).map_err(|error| fault(part, &error))?;
         let lines = text.lines().map(|line| line.split_ascii_whitespace().collect::<Vec<_>>().join(" "));
         Ok(lines.filter(|line| !line.is_empty()).collect())
     }

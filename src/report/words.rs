@@ -75,9 +75,9 @@ pub struct Words {
 }
 
 impl Words {
-    /// The built-in words. A fault means that the part is no valid TOML or lacks a word.
-    pub fn built_in() -> Result<Self, Diagnostic> {
-        toml::from_str(include_str!("../../templates/words.toml"))
+    /// The built-in words for channels turned by `driver`: `field`, `magnetisation`. A fault means that the part is no valid TOML or lacks a word.
+    pub fn built_in(driver: &str) -> Result<Self, Diagnostic> {
+        toml::from_str(&include_str!("../../templates/words.toml").replace("{driver}", driver))
             .map_err(|error| Diagnostic::fault("template", format!("the part “words.toml” cannot be read: {error}")))
     }
 

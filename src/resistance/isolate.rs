@@ -1,6 +1,7 @@
 //! Which readings show one region alone.
 
 use crate::device::ContactIdx;
+use crate::device::Mixing;
 use crate::network::Network;
 use crate::number::Rational;
 use crate::resistance::ClosedForm;
@@ -19,7 +20,7 @@ pub struct Isolating {
     pub reading: Reading,
     /// Its closed form.
     pub form: ClosedForm,
-    /// Its value in h/e² at the point.
+    /// Its value in h/e² at the point: that of its closed form, which is exact.
     pub exact: Rational,
     /// Sum of the changes in h/e² when one contact after the other loses a tenth of its transmission.
     pub contact_error: Rational,
@@ -68,8 +69,9 @@ pub fn isolating(
     let alone = |form: &ClosedForm| matches!(form.terms.as_slice(), [(only, _)] if *only == region);
     let (readings, found): (Vec<Reading>, Vec<ClosedForm>) =
         tried.into_iter().zip(forms).filter_map(|(reading, form)| Some((reading, form.filter(alone)?))).unzip();
-    // The ranking is of the device itself; no circuit is solved for it.
-    let setup = Setup { circuit: None, ..setup.clone() };
+    // The ranking is of the device itself; no circuit is solved for it. What shows one region alone does so with any
+    // mixing length, so that the exact solution without mixing over lengths ranks it.
+    let setup = Setup { circuit: None, operating: setup.operating.without_lengths(&Mixing::None) };
     let ideal = values(network, &setup, &readings);
     let errors = contact_errors(network, &setup, (&readings, &ideal));
     let all = readings.into_iter().zip(found).zip(ideal).zip(errors);

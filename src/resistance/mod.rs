@@ -114,6 +114,13 @@ pub struct Expected {
     pub formula: Option<String>,
 }
 
+impl Expected {
+    /// Its value in h/e², exact where it is.
+    pub fn number(&self) -> Option<Number> {
+        self.exact.clone().map(Number::Exact).or(self.h_per_e2.map(Number::Float))
+    }
+}
+
 /// The solution of one setup with all readings asked for.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Prediction {

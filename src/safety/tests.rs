@@ -4,6 +4,7 @@ use super::*;
 use crate::cooldown::Excitation;
 use crate::cooldown::Magnet;
 use crate::cooldown::Room;
+use crate::device::Drive;
 use crate::device::EdgeRules;
 use crate::device::Ladder;
 use crate::device::Layer;
@@ -31,6 +32,8 @@ fn plain_device() -> Device {
         layer: Layer::default(),
         mesa: Mesa { shape, snap: Nanometres(10), place: place() },
         edge: EdgeRules { rim: Mixing::None, interface: Mixing::None, opposite: Mixing::Full },
+        groups: None,
+        driven_by: Drive::Field,
         contacts: Vec::new(),
         overlays: Vec::new(),
         points: Vec::new(),

@@ -75,7 +75,7 @@ impl Sample {
                 options: Vec::new(),
                 repeat: long(1),
             },
-            words: Words::built_in().unwrap(),
+            words: Words::built_in("field").unwrap(),
         }
     }
 

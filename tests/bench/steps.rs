@@ -135,7 +135,8 @@ impl Solver {
         let isolated = clock.time("isolating readings", || self.isolated(point, &setup, solved));
         clock.time("corrections and budgets", || Beside {
             isolated,
-            other_mixing: solved.expected.clone(),
+            unmixed: solved.expected.clone(),
+            mixed: solved.expected.clone(),
             corrections: solved.corrections(&setup),
             two_terminal: self.two_terminal(&setup, solved),
         })

@@ -44,7 +44,7 @@ fn expectations(bytes: &[u8]) -> Vec<Expected> {
     text.lines().filter_map(|line| line.strip_prefix("#! ")).map(Expected::from_line).collect()
 }
 
-/// Findings of a file that must fail; files of cooldowns are read beside the good device.
+/// Findings of a file that must fail, as it is read or as it is laid out; files of cooldowns are read beside the good device.
 fn findings(name: &str, bytes: &[u8]) -> Vec<Diagnostic> {
     let faults = if name.starts_with("cooldown") {
         let device = edgesheet::device::from_bytes("bar.toml", DEVICE).unwrap().value;

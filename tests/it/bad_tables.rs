@@ -12,6 +12,7 @@ use edgesheet::cooldown::ContactNames;
 use edgesheet::cooldown::MagnetSense;
 use edgesheet::cooldown::Names;
 use edgesheet::device::ContactIdx;
+use edgesheet::device::Drive;
 use edgesheet::diagnostic::Diagnostic;
 use edgesheet::diagnostic::Faults;
 use edgesheet::diagnostic::Noted;
@@ -41,6 +42,7 @@ fn names() -> Names {
         points: vec!["4 over 2".to_string(), "3 over 1".to_string()],
         meters: Some(vec!["A".to_string(), "lock-in".to_string()]),
         magnet: MagnetSense::Unknown,
+        driven_by: Drive::Field,
         coverage_factor: 1.0,
     }
 }
@@ -68,6 +70,7 @@ fn expectations(text: &str) -> (Vec<(String, String, String)>, Names) {
     for line in text.lines().filter_map(|line| line.strip_prefix("#! ")) {
         match line {
             "with magnet-toward" => names.magnet = MagnetSense::Toward,
+            "with magnetisation" => (names.magnet, names.driven_by) = (MagnetSense::Toward, Drive::Magnetisation),
             "with magnet-away" => names.magnet = MagnetSense::Away,
             _ => {
                 let (head, words) = line.split_once(" \"").unwrap();

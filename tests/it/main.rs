@@ -10,6 +10,7 @@ mod circuit_laws;
 mod commands;
 mod damage;
 mod drawing;
+mod edges;
 mod expect_json;
 mod expect_text;
 mod forms;

@@ -177,7 +177,8 @@ impl Solver<'_> {
             let isolated = regions.map(|(at, region)| IsolatedRegion { name: region.name.clone(), best: best(at) });
             Beside {
                 isolated: isolated.collect(),
-                other_mixing: self.other_mixing(point, side, &solved[side]),
+                unmixed: self.with_rim(point, (side, &solved[side]), Mixing::None),
+                mixed: self.with_rim(point, (side, &solved[side]), Mixing::Full),
                 corrections: solved[side].corrections(&setup),
                 two_terminal: self.two_terminal(&setup, &solved[side]),
             }
@@ -192,9 +193,9 @@ impl Solver<'_> {
         Some((prediction.expected.remove(0), budget))
     }
 
-    fn other_mixing(&self, point: usize, side: usize, solved: &Prediction) -> Vec<Expected> {
+    fn with_rim(&self, point: usize, (side, solved): (usize, &Prediction), rim: Mixing) -> Vec<Expected> {
         let mut other = self.device.points[point].clone();
-        other.edge.rim = if other.edge.rim == Mixing::None { Mixing::Full } else { Mixing::None };
+        other.edge.rim = rim;
         let operating = edgesheet::network::operating(self.network, self.device, &other, Polarity::BOTH[side]);
         let setup = Setup { operating, circuit: None };
         let readings: Vec<Reading> = solved.expected.iter().map(|expected| expected.reading.clone()).collect();

@@ -4,7 +4,6 @@ use std::collections::BTreeSet;
 
 use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Findings;
-use crate::number::Rational;
 use crate::quantity::Nanometres;
 use crate::syntax::Table;
 use crate::syntax::quoted;
@@ -12,30 +11,22 @@ use crate::syntax::quoted;
 use crate::device::Contact;
 use crate::device::ContactShape;
 use crate::device::Corner;
-use crate::device::Ladder;
-use crate::device::OperatingPoint;
 use crate::device::names::doubled;
 use crate::device::parse::placement;
 use crate::device::parse::transmission;
 
-/// All contacts, none in place of one that could not be read; `points` tells how many channels a contact can meet, where the points could be read.
-pub(super) fn read(
-    root: &Table,
-    points: Option<(&[OperatingPoint], &Ladder)>,
-    findings: &mut Findings,
-) -> Vec<Option<Contact>> {
+/// All contacts, none in place of one that could not be read.
+pub(super) fn read(root: &Table, findings: &mut Findings) -> Vec<Option<Contact>> {
     let tables = root.tables("contact");
     findings.extend(doubled("contact", "name", &tables));
     findings.extend(doubled("pin", "pin", &tables));
     findings.extend(ambiguous_pins(&tables));
     findings.extend(too_few(&tables));
-    let channels = points.map(|(points, ladder)| transmission::most_channels(points, ladder));
+    if root.tables("point").iter().any(|point| point.node("modes").is_some()) {
+        findings.extend(tables.iter().filter_map(|table| transmission::beside_modes(table)));
+    }
     let mesa = root.table("mesa").and_then(|mesa| mesa.text("shape"));
-    let contact = |table: &&Table| {
-        let shape = placement::read(table, mesa.as_deref(), findings);
-        let transmission = transmission::read(table, channels, findings);
-        contact(table, shape?, transmission)
-    };
+    let contact = |table: &&Table| contact(table, placement::read(table, mesa.as_deref(), findings)?);
     tables.iter().map(contact).collect()
 }
 
@@ -61,14 +52,14 @@ fn too_few(tables: &[&Table]) -> Option<Diagnostic> {
     )
 }
 
-fn contact(table: &Table, shape: ContactShape, transmission: Vec<Rational>) -> Option<Contact> {
+fn contact(table: &Table, shape: ContactShape) -> Option<Contact> {
     Some(Contact {
         name: table.text("name")?,
         pin: table.text("pin"),
         pad: table.text("pad"),
         note: table.text("note"),
         shape,
-        transmission,
+        transmission: transmission::read(table),
         place: table.place.clone(),
     })
 }

@@ -8,6 +8,7 @@ use crate::quantity::KLITZING;
 use crate::syntax::quoted;
 
 use crate::device::Device;
+use crate::device::Drive;
 use crate::device::Ladder;
 use crate::device::LadderPlace;
 use crate::device::OperatingPoint;
@@ -45,7 +46,7 @@ fn against_filling(
     point: &OperatingPoint,
     (what, density, stated): (&str, f64, &Rational),
 ) -> Option<Diagnostic> {
-    let field = point.field_t?;
+    let field = point.field_t.filter(|_| device.driven_by == Drive::Field && point.modes.is_none())?;
     let carrier = if point.bulk.is_negative() { -1.0 } else { 1.0 };
     let filling = carrier * density * KLITZING.value * ELEMENTARY_CHARGE.value / field;
     let nearest = nearest_step(&device.ladder, filling)?;

@@ -6,6 +6,7 @@ mod filling;
 mod identity;
 mod mesa;
 mod mixing;
+mod modes;
 mod overlay;
 mod placement;
 mod point;
@@ -26,6 +27,7 @@ use crate::syntax::keys::DEVICE_FILE;
 use crate::device::Contact;
 use crate::device::Device;
 use crate::device::EdgeRules;
+use crate::device::Groups;
 use crate::device::Ladder;
 use crate::device::Layer;
 use crate::device::Mesa;
@@ -65,6 +67,8 @@ pub fn drawing(source: &Arc<Source>) -> Option<Device> {
         layer: parts.layer,
         mesa: parts.mesa?,
         edge: parts.edge,
+        groups: parts.groups,
+        driven_by: mixing::driven_by(&root),
         contacts,
         overlays: parts.overlays.into_iter().flatten().collect(),
         points: parts.points.filter(|_| all).unwrap_or_default(),
@@ -87,6 +91,7 @@ struct Parts {
     layer: Layer,
     mesa: Option<Mesa>,
     edge: EdgeRules,
+    groups: Option<Groups>,
     contacts: Vec<Option<Contact>>,
     overlays: Vec<Option<Overlay>>,
     points: Option<Vec<OperatingPoint>>,
@@ -97,13 +102,14 @@ impl Parts {
     fn read(root: &Table, findings: &mut Findings) -> Self {
         let ladder = identity::ladder(root);
         let mesa = mesa::read(root, findings);
-        let edge = mixing::edge(root, findings);
+        let edge = mixing::edge(root);
+        let groups = mixing::groups(root, findings);
         let overlays = overlay::read(root, findings);
         let scope = scope(root, &ladder);
         let points = point::read(root, &scope, findings);
-        let contacts = contact::read(root, points.as_deref().map(|points| (points, &ladder)), findings);
+        let contacts = contact::read(root, findings);
         let readings = reading::read(root, &scope, findings);
-        Self { layer: identity::layer(root), mesa, edge, contacts, overlays, points, readings, ladder }
+        Self { layer: identity::layer(root), mesa, edge, groups, contacts, overlays, points, readings, ladder }
     }
 }
 
@@ -117,6 +123,8 @@ fn device(root: &Table, findings: &mut Findings) -> Option<Device> {
         layer: parts.layer,
         mesa: parts.mesa?,
         edge: parts.edge,
+        groups: parts.groups,
+        driven_by: mixing::driven_by(root),
         contacts: parts.contacts.into_iter().collect::<Option<_>>()?,
         overlays: parts.overlays.into_iter().collect::<Option<_>>()?,
         points: parts.points?,

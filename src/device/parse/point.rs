@@ -15,6 +15,7 @@ use crate::device::parse::filling;
 use crate::device::parse::filling::Between;
 use crate::device::parse::filling::Stated;
 use crate::device::parse::mixing;
+use crate::device::parse::modes;
 use crate::device::parse::noted;
 
 pub(super) fn read(root: &Table, scope: &Scope<'_>, findings: &mut Findings) -> Option<Vec<OperatingPoint>> {
@@ -26,35 +27,42 @@ pub(super) fn read(root: &Table, scope: &Scope<'_>, findings: &mut Findings) -> 
 
 fn point(root: &Table, table: &Table, scope: &Scope<'_>, findings: &mut Findings) -> Option<OperatingPoint> {
     findings.extend(beside_modes(table));
+    let modes = modes::read(table, findings);
     let bulk = bulk(table, scope, findings);
     let fillings = fillings(table, scope, findings);
     let gates_v = gates(table, scope, findings);
     findings.extend(steps_without_filling(table, &fillings, (root, scope)));
-    // What `[edge]` itself has wrong is said where that table is read.
-    let edge = mixing::edge(root, &mut Findings::default());
+    let edge = mixing::edge(root);
     Some(OperatingPoint {
         name: table.text("name")?,
         field_t: table.number("field_T"),
-        bulk: bulk?,
+        bulk: bulk.or(modes.map(|_| Rational::ZERO))?,
         fillings,
         gates_v,
         edge: mixing::overridden(table, &edge),
+        modes,
         place: table.place.clone(),
     })
 }
 
-/// Edge modes stand in place of fillings.
+/// Edge modes stand in place of fillings, and nothing joins them between contacts.
 fn beside_modes(table: &Table) -> Vec<Diagnostic> {
     if table.node("modes").is_none() {
         return Vec::new();
     }
-    let both = ["bulk", "fillings"].into_iter().filter(|key| table.node(key).is_some());
-    let fault = |key: &str| {
-        Diagnostic::fault("contradiction", format!("`{key}` stands beside `modes`, which take its place"))
-            .at(table.key_place(key))
-            .hint("keep `modes`, or `bulk` with `fillings`")
+    let stands = |key: &&str| table.node(key).is_some();
+    let fault = |key: &str, message: String, hint: &str| {
+        Diagnostic::fault("contradiction", message).at(table.key_place(key)).hint(hint)
     };
-    both.map(fault).collect()
+    let fillings = ["bulk", "bulk_partial", "fillings"].into_iter().filter(stands).map(|key| {
+        let message = format!("`{key}` stands beside `modes`, which take its place");
+        fault(key, message, "keep `modes`, or `bulk` with `fillings`")
+    });
+    let mixings = ["mixing", "interface_mixing", "opposite_mixing"].into_iter().filter(stands).map(|key| {
+        let message = format!("`{key}` stands beside `modes`, which are joined at contacts only");
+        fault(key, message, "leave it out; `backscatter_um` joins one mode each way along the rim")
+    });
+    fillings.chain(mixings).collect()
 }
 
 fn bulk(table: &Table, scope: &Scope<'_>, findings: &mut Findings) -> Option<Rational> {

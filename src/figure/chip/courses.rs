@@ -1,5 +1,7 @@
 //! Lines for channels: how many stand for a band, at what depth they run, along which borders.
 
+use std::collections::BTreeMap;
+
 use crate::figure::chip::ChipDrawing;
 use crate::figure::chip::vector::dot;
 use crate::figure::chip::vector::length;
@@ -39,17 +41,28 @@ pub(super) fn lines(channels: &Channels) -> Vec<Lines> {
         bands.map(|(band, _)| units(band)).sum::<usize>()
     };
     let single = [Carrier::Electron, Carrier::Hole].into_iter().all(|carrier| of_carrier(carrier) <= SINGLE_LINES);
+    let shared = runs_side_by_side(channels);
     let mut next = [0, 0];
     let bands = channels.bands.iter().enumerate();
     bands
         .map(|(index, band)| {
-            let first = &mut next[usize::from(band.carrier == Carrier::Hole)];
+            let first = &mut next[usize::from(band.carrier == Carrier::Hole && !shared)];
             let count = if single { units(index) } else { 1 };
             let lines = Lines { first: *first, count, weight: weight(index) / count as f64 };
             *first += count;
             lines
         })
         .collect()
+}
+
+/// Whether channels of both carriers run along one side of a piece, as edge modes do: then their lines form one nest.
+fn runs_side_by_side(channels: &Channels) -> bool {
+    let mut sides: BTreeMap<(PieceIdx, bool), Carrier> = BTreeMap::new();
+    let mut steps = channels.courses.iter().flat_map(|course| {
+        let carrier = channels.bands[course.band.0].carrier;
+        course.steps.iter().map(move |step| ((step.piece, step.forward == (carrier == Carrier::Electron)), carrier))
+    });
+    steps.any(|(side, carrier)| *sides.entry(side).or_insert(carrier) != carrier)
 }
 
 /// Which part of a course a border belongs to.

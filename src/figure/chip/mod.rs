@@ -51,7 +51,7 @@ pub struct ChipDrawing<'a> {
     pub layout: &'a Layout,
     /// The channels that were solved.
     pub channels: &'a Channels,
-    /// Filling of every face, in the order of the layout.
+    /// Filling of every face, in the order of the layout; empty where edge modes stand in place of fillings.
     pub fillings: &'a [Rational],
     /// Polarity of the field.
     pub polarity: Polarity,

@@ -12,8 +12,10 @@ use crate::figure::chip::offset::Bit;
 use crate::figure::chip::stretch::Plane;
 use crate::figure::chip::style;
 use crate::figure::chip::vector::add;
+use crate::figure::chip::vector::between;
 use crate::figure::chip::vector::direction;
 use crate::figure::chip::vector::dot;
+use crate::figure::chip::vector::length;
 use crate::figure::chip::vector::right_of;
 use crate::figure::chip::vector::sub;
 use crate::figure::chip::vector::times;
@@ -46,8 +48,8 @@ pub(super) fn reaches<'a>(
     let mut all: Vec<Reach<'a>> = Vec::new();
     for lane in lanes {
         let first = all.len();
-        for bit in &lane.bits {
-            let bundle = bundle_at(drawing, lane, bit.part);
+        for (bit, half) in &halved(drawing, lane) {
+            let bundle = bundle_at(drawing, lane, (bit.part, *half));
             let potential = bundle.and_then(|bundle| drawing.potential(bundle));
             let mixing = bundle.filter(|bundle| mixing.contains(bundle));
             let goes_on = all.len() > first;
@@ -71,15 +73,55 @@ pub(super) fn mixing_bundles(drawing: &ChipDrawing<'_>) -> BTreeSet<BundleIdx> {
     courses.into_iter().filter(|(_, courses)| courses.len() > 1).map(|(bundle, _)| bundle).collect()
 }
 
-/// The bundle of a part of a course; beyond the ends that of the nearest step.
-fn bundle_at(drawing: &ChipDrawing<'_>, lane: &Lane, part: Part) -> Option<BundleIdx> {
+/// The halves of a border along which the potential changes; a border along which it does not has a first half alone.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Half {
+    First,
+    Second,
+}
+
+/// The bundle of a part of a course; beyond the ends that of the nearest step. Where the potential changes along a border
+/// the first half of the line shows it on entering, the second on leaving.
+fn bundle_at(drawing: &ChipDrawing<'_>, lane: &Lane, part: (Part, Half)) -> Option<BundleIdx> {
     let steps = &drawing.channels.courses[lane.course].steps;
-    let step = match part {
-        Part::Before => steps.first(),
-        Part::Step(at) => steps.get(at),
-        Part::After => steps.last(),
+    match part {
+        (Part::Before, _) => steps.first().map(|step| step.bundle),
+        (Part::Step(at), Half::First) => steps.get(at).map(|step| step.bundle),
+        (Part::Step(at), Half::Second) => steps.get(at).map(|step| step.leaving),
+        (Part::After, _) => steps.last().map(|step| step.leaving),
+    }
+}
+
+/// The bits of a line, cut in the middle of every border along which the potential changes.
+fn halved(drawing: &ChipDrawing<'_>, lane: &Lane) -> Vec<(Bit, Half)> {
+    let steps = &drawing.channels.courses[lane.course].steps;
+    let changed = |part: Part| matches!(part, Part::Step(at) if steps.get(at).is_some_and(|step| step.is_changed()));
+    let runs = lane.bits.chunk_by(|one, next| one.part == next.part);
+    let cut = |run: &[Bit]| match run.first() {
+        Some(bit) if changed(bit.part) => cut_in_half(run),
+        _ => run.iter().map(|bit| (*bit, Half::First)).collect(),
     };
-    step.map(|step| step.bundle)
+    runs.flat_map(cut).collect()
+}
+
+/// A straight bit is cut where the middle lies, a round one belongs to the half that holds more of it.
+fn cut_in_half(run: &[Bit]) -> Vec<(Bit, Half)> {
+    let long = |bit: &Bit| length(sub(bit.to, bit.from));
+    let middle = run.iter().map(long).sum::<f64>() / 2.0;
+    let mut walked = 0.0;
+    let mut halves = Vec::new();
+    for bit in run {
+        let (start, end) = (walked, walked + long(bit));
+        walked = end;
+        if bit.bend.is_none() && start < middle && middle < end {
+            let at = between(bit.from, bit.to, (middle - start) / (end - start));
+            halves.push((Bit { to: at, ..*bit }, Half::First));
+            halves.push((Bit { from: at, ..*bit }, Half::Second));
+        } else {
+            halves.push((*bit, if (start + end) / 2.0 < middle { Half::First } else { Half::Second }));
+        }
+    }
+    halves
 }
 
 /// The mark of a stretch.

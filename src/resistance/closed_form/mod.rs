@@ -15,7 +15,6 @@ use crate::device::Device;
 use crate::device::Mixing;
 use crate::device::OperatingPoint;
 use crate::device::OverlayIdx;
-use crate::network::Arithmetic;
 use crate::network::Coupling;
 use crate::network::FaceIdx;
 use crate::network::FaceLabel;
@@ -88,12 +87,14 @@ impl ClosedForms {
         let apart: Vec<usize> = (0..regions.len()).collect();
         let tied = ties(&mut regions);
         let ways = if tied.len() < apart.len() { vec![apart, tied] } else { vec![apart] };
-        let settings = exact_settings(operating);
+        // Edge modes bound no regions: nothing is there to be fitted.
+        let settings = if regions.is_empty() { Vec::new() } else { exact_settings(operating) };
         let level = |way: Vec<usize>| {
             let named: Vec<FillingRegion> = way.iter().map(|&at| regions[at].clone()).collect();
             let fillings: Vec<Rational> = named.iter().map(|region| region.filling.clone()).collect();
-            let fits = settings.iter().map(|setting| Fit::of(network, setting, &named)).collect::<Option<_>>()?;
-            Some(Level { fits, regions: way, inverses: inverses(&fillings) })
+            let fits: Vec<Fit> =
+                settings.iter().map(|setting| Fit::of(network, setting, &named)).collect::<Option<_>>()?;
+            (!fits.is_empty()).then(|| Level { fits, regions: way, inverses: inverses(&fillings) })
         };
         let levels = ways.into_iter().filter_map(level).collect();
         let point = match conductance(&channels(network, operating)) {
@@ -159,15 +160,9 @@ const SAME_VALUE: f64 = 1e-9;
 
 /// The setting in fractions; where lengths enter, without mixing over them and with full mixing.
 fn exact_settings(operating: &Operating) -> Vec<Operating> {
-    let with = |mixing: &Mixing| {
-        let coupling = operating.coupling.iter().map(|coupling| coupling.without_length(mixing)).collect();
-        Operating { coupling, arithmetic: Arithmetic::Exact, ..operating.clone() }
-    };
-    if operating.coupling.iter().any(Coupling::has_length) {
-        vec![with(&Mixing::None), with(&Mixing::Full)]
-    } else {
-        vec![with(&Mixing::None)]
-    }
+    let lengths = operating.coupling.iter().any(Coupling::has_length);
+    let rules = if lengths { [Mixing::None, Mixing::Full].as_slice() } else { &[Mixing::None] };
+    rules.iter().map(|rule| operating.without_lengths(rule)).collect()
 }
 
 /// Regions with a filling of their own, then overlays that have the bulk's; and the number of the first.

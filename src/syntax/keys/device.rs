@@ -12,8 +12,6 @@ pub static DEVICE_FILE: FileSpec = FileSpec { what: "device file", root: &ROOT }
 /// Words for the ladders with a name.
 const LADDERS: &[&str] = &["spin-split", "spin-degenerate", "graphene", "bilayer-graphene"];
 const ONE_DEVICE: &str = "one device with its own file is computed, without links";
-const GROUPS: &str = "mixing `\"none\"` or `\"full\"` is computed, alike for all channels that run side by side";
-const MODES: &str = "an operating point with `bulk` and `fillings` is computed";
 
 static ROOT: TableSpec = TableSpec {
     name: "",
@@ -81,8 +79,8 @@ static EDGE: TableSpec = TableSpec {
         Key::new("mixing", Kind::Mixing, "between channels side by side along the rim").default("\"none\""),
         Key::new("interface_mixing", Kind::Mixing, "along borders between regions of one sign").default("\"none\""),
         Key::new("opposite_mixing", Kind::Mixing, "along borders between opposite signs").default("\"full\""),
-        Key::new("groups", Kind::Groups, "ladder steps that mix with one another").not_yet(GROUPS),
-        Key::new("group_mixing", Kind::Mixing, "mixing between groups").default("\"none\"").not_yet(GROUPS),
+        Key::new("groups", Kind::Groups, "ladder steps that mix with one another, 1 outermost"),
+        Key::new("group_mixing", Kind::Mixing, "mixing between groups").default("\"none\""),
         Key::new("driven_by", Kind::Word(&["field", "magnetisation"]), "what turns the channels").default("\"field\""),
     ],
 };
@@ -159,8 +157,8 @@ static POINT: TableSpec = TableSpec {
         Key::new("mixing", Kind::Mixing, "in place of `mixing` of [edge]"),
         Key::new("interface_mixing", Kind::Mixing, "in place of `interface_mixing` of [edge]"),
         Key::new("opposite_mixing", Kind::Mixing, "in place of `opposite_mixing` of [edge]"),
-        Key::new("modes", Kind::One(&MODE_COUNTS), "counter-running edge modes in place of fillings").not_yet(MODES),
-        Key::new("backscatter_um", Kind::Length(Range::Positive), "backscattering length of modes 1/1").not_yet(MODES),
+        Key::new("modes", Kind::One(&MODE_COUNTS), "counter-running edge modes in place of fillings"),
+        Key::new("backscatter_um", Kind::Length(Range::Positive), "backscattering length of modes 1/1"),
     ],
 };
 

@@ -98,7 +98,7 @@ pub enum Kind {
     Outline,
     /// A list of outlines.
     Outlines,
-    /// A list of lists of fillings.
+    /// A list of lists of whole numbers, each number once.
     Groups,
     /// A list of texts.
     Texts,

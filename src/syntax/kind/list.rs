@@ -28,6 +28,23 @@ pub(super) fn fillings(key: &str, node: &Node) -> Vec<Diagnostic> {
     each(key, node, number::filling)
 }
 
+/// Ladder steps by their number, from 1 at the outermost; each at most once.
+pub(super) fn groups(key: &str, node: &Node) -> Vec<Diagnostic> {
+    let mut found = each(key, node, |key, group| each(key, group, |key, step| number::count(1, key, step)));
+    let steps = node.list().unwrap_or_default().iter().flat_map(|group| group.list().unwrap_or_default());
+    let mut seen = Vec::new();
+    for (step, number) in steps.filter_map(|step| Some((step, step.count()?))) {
+        if seen.contains(&number) {
+            let message = format!("{} holds step {number} twice", quoted(key));
+            found.push(
+                Diagnostic::fault("doubled-step", message).at(&step.place).hint("a step is in one group at most"),
+            );
+        }
+        seen.push(number);
+    }
+    found
+}
+
 /// A named ladder or a list of fillings in rising order.
 pub(super) fn ladder(words: &[&str], key: &str, node: &Node) -> Vec<Diagnostic> {
     let Value::List(list) = &node.value else { return word::one_of(words, key, node) };

@@ -34,7 +34,7 @@ pub(super) fn judge(kind: &Kind, key: &str, node: &Node) -> Vec<Diagnostic> {
         Kind::Corner => list::corner(key, node),
         Kind::Outline => list::outline(key, node),
         Kind::Outlines => list::each(key, node, list::outline),
-        Kind::Groups => list::each(key, node, list::fillings),
+        Kind::Groups => list::groups(key, node),
         Kind::Texts => list::each(key, node, word::text),
         Kind::Open(_) | Kind::One(_) | Kind::Many(_) => Vec::new(),
     }

@@ -5,6 +5,8 @@ use crate::diagnostic::Diagnostic;
 use crate::syntax::Node;
 use crate::syntax::Value;
 use crate::syntax::did_you_mean;
+use crate::syntax::keys::Range;
+use crate::syntax::kind::number;
 use crate::syntax::kind::wrong_kind;
 use crate::syntax::quoted;
 
@@ -87,21 +89,20 @@ pub(super) fn one_of(words: &[&str], key: &str, node: &Node) -> Vec<Diagnostic> 
     ]
 }
 
-/// `"none"` and `"full"` are computed; a length is read, and refused for now because results would be wrong without it.
+/// `"none"`, `"full"` or a table with a length alone.
 pub(super) fn mixing(key: &str, node: &Node) -> Vec<Diagnostic> {
     let Value::Table(table) = &node.value else { return one_of(&["none", "full"], key, node) };
-    let length = table.node("length_um").filter(|_| table.entries.len() == 1);
-    match length.and_then(|node| node.length("length_um")) {
-        Some(length) if length.nanometres > 0 => {
+    match table.node(LENGTH).filter(|_| table.entries.len() == 1) {
+        Some(length) => number::length(Range::Positive, LENGTH, length),
+        None => {
+            let wanted = "\"none\", \"full\" or { length_um = 150 }";
             vec![
-                Diagnostic::fault("not-computed-yet", format!("{} over a length is not computed yet", quoted(key)))
-                    .at(&node.place)
-                    .hint("\"none\" (no mixing) and \"full\" (complete mixing) are computed"),
+                wrong_kind(key, wanted, node)
+                    .hint("write \"none\", \"full\" or { length_um = … } with nothing beside it"),
             ]
-        }
-        _ => {
-            let wanted = "\"none\", \"full\" or { length_um = 150 } with a length above zero";
-            vec![wrong_kind(key, wanted, node).hint("write \"none\" or \"full\"")]
         }
     }
 }
+
+/// The key of a mixing length.
+const LENGTH: &str = "length_um";
