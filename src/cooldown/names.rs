@@ -38,6 +38,11 @@ pub struct ContactNames {
 }
 
 impl Names {
+    /// Whether the polarity of a reading is that of a magnetisation.
+    pub fn is_magnetised(&self) -> bool {
+        self.driven_by == Drive::Magnetisation
+    }
+
     /// The names that this device and this cooldown give.
     pub fn of(device: &Device, cooldown: Option<&Cooldown>) -> Self {
         let plug = |idx: usize| {

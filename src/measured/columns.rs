@@ -3,7 +3,6 @@
 use std::collections::BTreeMap;
 
 use crate::cooldown::Names;
-use crate::device::Drive;
 use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Findings;
 use crate::diagnostic::Place;
@@ -159,7 +158,7 @@ impl Header {
                 Diagnostic::fault("two-polarities", "the header has both `polarity` and `field_T`")
                     .hint("keep one of them; the field's magnitude belongs to the point"),
             ),
-            (false, true) if names.driven_by == Drive::Magnetisation => Some(
+            (false, true) if names.is_magnetised() => Some(
                 Diagnostic::fault(
                     "no-polarity",
                     "the sign of `field_T` does not say which way the magnetisation points",

@@ -71,7 +71,8 @@ pub fn field_words(sources: &Sources, texts: &Texts) -> Result<Vec<String>, Diag
         MagnetSense::Away => "away",
         MagnetSense::Unknown => "unknown",
     });
-    texts.lines("field.txt", &FieldFields { check, magnet })
+    let only_modes = sources.device.points.iter().all(|point| point.modes.is_some());
+    texts.lines("field.txt", &FieldFields { check, magnet, only_modes })
 }
 
 #[derive(Serialize)]
@@ -117,6 +118,8 @@ fn stands_for_many(point: &PointSource) -> bool {
 struct FieldFields {
     check: Option<CheckFields>,
     magnet: Option<&'static str>,
+    /// No point has fillings.
+    only_modes: bool,
 }
 
 #[derive(Serialize)]

@@ -30,7 +30,10 @@ pub fn rules(sources: &Sources, texts: &Texts) -> Result<Vec<String>, Diagnostic
         judged: comparison.map_or(0, |comparison| comparison.judged),
         coverage_factor: (factor != 1.0).then(|| as_given(factor)),
         mixing: mixing(sources),
-        groups: device.groups.as_ref().map(|groups| groups.steps.iter().map(group).collect::<Vec<_>>().join(", ")),
+        groups: device
+            .groups
+            .as_ref()
+            .map(|groups| groups.steps.iter().map(|steps| group(steps)).collect::<Vec<_>>().join(", ")),
         between: device.groups.as_ref().map_or_else(String::new, |groups| mixing_word(&groups.between)),
         lengths: mixings(device).any(|mixing| mixing.has_length()),
         modes: device.points.iter().any(|point| point.modes.is_some()),
@@ -132,7 +135,7 @@ fn mixings(device: &Device) -> impl Iterator<Item = &Mixing> {
 }
 
 /// `1 with 3`.
-fn group(steps: &Vec<usize>) -> String {
+fn group(steps: &[usize]) -> String {
     steps.iter().map(usize::to_string).collect::<Vec<_>>().join(" with ")
 }
 

@@ -8,6 +8,8 @@ pub struct Size {
     pub contacts: usize,
     pub gates: usize,
     pub points: usize,
+    /// A line of `[edge]`.
+    pub edge: &'static str,
 }
 
 /// A bar with contacts at both ends and evenly along both sides, and gates between the first pairs of probes; where there
@@ -18,7 +20,8 @@ pub fn device(size: Size) -> String {
     let length_um = (pairs as f64 + 1.0) * pitch_um;
     let mut text = format!(
         "format = 1\n[device]\nid = \"bench\"\n[mesa]\nshape = \"bar\"\nlength_um = {length_um}\nwidth_um = 100\n\
-         [[contact]]\nname = \"S\"\nedge = \"left\"\n[[contact]]\nname = \"D\"\nedge = \"right\"\n"
+         [edge]\n{}\n[[contact]]\nname = \"S\"\nedge = \"left\"\n[[contact]]\nname = \"D\"\nedge = \"right\"\n",
+        size.edge
     );
     for (edge, letter) in [("top", 't'), ("bottom", 'b')] {
         for pair in 1..=pairs {

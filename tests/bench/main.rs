@@ -60,7 +60,7 @@ fn demo(folder: &Path) {
 /// The budget case: 14 contacts, 60 readings that agree.
 fn agreeing_bar(folder: &Path) {
     println!("\n== sheet of a bar with 14 contacts and 60 agreeing readings");
-    let texts = agreeing(Size { contacts: 14, gates: 2, points: 1 }, 60);
+    let texts = agreeing(Size { contacts: 14, gates: 2, points: 1, edge: "" }, 60);
     whole_run(&put(&folder.join("fourteen"), &texts), " (budget 60 ms, 30 MB)");
     of_steps(&texts);
 }
@@ -93,8 +93,11 @@ fn agreeing(size: Size, count: usize) -> Texts {
 
 fn thirty_two_contacts(folder: &Path) {
     println!("\n== 32 contacts, every reading, both polarities, exact");
-    let texts =
-        Texts { device: devices::device(Size { contacts: 32, gates: 2, points: 1 }), cooldown: None, readings: None };
+    let texts = Texts {
+        device: devices::device(Size { contacts: 32, gates: 2, points: 1, edge: "" }),
+        cooldown: None,
+        readings: None,
+    };
     let mut clock = Clock::default();
     let solver = Solver::of(&texts, &mut clock);
     let readings = edgesheet::resistance::every_reading(32);
@@ -113,12 +116,18 @@ fn thirty_two_contacts(folder: &Path) {
     run_once(&folder, "isolate device.toml G0");
 }
 
-/// Time from texts to all standard readings with their forms, relative to the smallest case.
+/// Time from texts to all standard readings, relative to the smallest case: without mixing, mixing fully (fractions) and
+/// over a length (floats).
 fn growth() {
     println!("\n== growth of the solution, as ratios to the first of each row");
-    let base = Size { contacts: 14, gates: 2, points: 1 };
+    let base = Size { contacts: 14, gates: 2, points: 1, edge: "" };
     row("contacts", &[8, 16, 32, 64, 128], |contacts| Size { contacts, ..base });
     row("gates", &[1, 2, 5, 10, 20, 40], |gates| Size { gates, ..base });
+    for (name, edge) in [("full mixing", "mixing = \"full\""), ("over 100 µm", "mixing = { length_um = 100 }")] {
+        println!("{name}:");
+        row("contacts", &[8, 16, 32, 64, 128], |contacts| Size { contacts, edge, ..base });
+        row("gates", &[1, 2, 5, 10, 20, 40], |gates| Size { gates, edge, ..base });
+    }
     row("points", &[1, 2, 3, 4, 5, 6], |points| Size { points, ..base });
 }
 

@@ -6,6 +6,7 @@ use std::collections::BTreeSet;
 use std::fmt::Write;
 
 use crate::pixel_dice::draw;
+use crate::random_bar::Dice;
 
 /// Side of a pixel in µm.
 pub const PIXEL_UM: i32 = 10;
@@ -67,12 +68,22 @@ pub struct PixelBar {
     pub fillings: BTreeMap<Vec<usize>, i64>,
     /// Full mixing along rims, borders of one sign, borders between opposite signs.
     pub full: [bool; 3],
+    /// A mixing length in µm in place of each of these.
+    pub over_um: [Option<i32>; 3],
 }
 
 impl PixelBar {
     /// The bar of a seed.
     pub fn new(seed: u64) -> Self {
         draw(seed)
+    }
+
+    /// The same bar with lengths in place of some of its mixings.
+    pub fn with_lengths(seed: u64) -> Self {
+        let mut dice = Dice::new(seed + 7000);
+        let bar = draw(seed);
+        let over_um = [0, 1, 2].map(|_| [None, Some(15), Some(70), Some(400)][dice.below(4) as usize]);
+        Self { over_um, ..bar }
     }
 
     /// Pixels of the mesa with its arms, without the contacts.
@@ -117,11 +128,15 @@ impl PixelBar {
 
     /// The device file.
     pub fn text(&self) -> String {
-        let Self { length, width, ladder, full, bulk, .. } = self;
-        let [rim, interface, opposite] = full.map(|full| if full { "full" } else { "none" });
+        let Self { length, width, ladder, bulk, .. } = self;
+        let [rim, interface, opposite] = [0, 1, 2].map(|at| match (self.over_um[at], self.full[at]) {
+            (Some(length), _) => format!("{{ length_um = {length} }}"),
+            (None, true) => "\"full\"".to_owned(),
+            (None, false) => "\"none\"".to_owned(),
+        });
         let mut text = format!(
             "format = 1\n[device]\nid = \"P\"\nladder = {}\n[mesa]\nshape = \"bar\"\nlength_um = {}\nwidth_um = {}\n\
-             [edge]\nmixing = \"{rim}\"\ninterface_mixing = \"{interface}\"\nopposite_mixing = \"{opposite}\"\n",
+             [edge]\nmixing = {rim}\ninterface_mixing = {interface}\nopposite_mixing = {opposite}\n",
             ladder.word,
             length * PIXEL_UM,
             width * PIXEL_UM

@@ -29,6 +29,7 @@ pub fn draw(seed: u64) -> PixelBar {
         bulk: 0,
         fillings: std::collections::BTreeMap::new(),
         full: [dice.chance(30), dice.chance(20), !dice.chance(15)],
+        over_um: [None; 3],
     };
     let wanted = 2 + whole(&mut dice, 6) as usize;
     for _ in 0..60 {

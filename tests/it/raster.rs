@@ -14,6 +14,7 @@ use crate::bar::BOTH;
 use crate::bar::Made;
 use crate::bar::make;
 use crate::pixel_bar::Matter;
+use crate::pixel_bar::PIXEL_UM;
 use crate::pixel_bar::Pixel;
 use crate::pixel_bar::PixelBar;
 
@@ -25,12 +26,32 @@ enum Fed {
 }
 
 /// Twice the middle of a pixel edge, and the ladder step with its carrier; no step where all channels share.
-type Place = ((i32, i32), Option<(bool, usize)>);
+type Place = ((i32, i32), Option<(bool, usize)>, Side);
+
+/// Where potentials change along a pixel edge, its two ends.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
+enum Side {
+    Entering,
+    Leaving,
+}
+
+/// What channels do to one another along a pixel edge.
+#[derive(Clone, Copy, Debug)]
+enum Rule {
+    None,
+    Full,
+    Over(f64),
+}
+
+/// By step its two nodes and their conductance.
+type Blended = BTreeMap<(bool, usize), (usize, usize, f64)>;
 
 #[derive(Default)]
 struct Nodes {
     index: BTreeMap<Place, usize>,
     feeds: Vec<BTreeMap<Fed, f64>>,
+    /// By pixel edge with a length: what is left of departures, and what runs there.
+    blended: BTreeMap<(i32, i32), (f64, Blended)>,
     /// (contact, node, conductance)
     absorbed: Vec<(usize, usize, f64)>,
     emitted: Vec<f64>,
@@ -71,6 +92,7 @@ pub fn raster(bar: &PixelBar, polarity: Polarity) -> Vec<Vec<f64>> {
             below = end;
         }
     }
+    nodes.blend();
     nodes.conductance()
 }
 
@@ -132,36 +154,68 @@ fn follow(
     };
     let first = walk.iter().position(|stride| contact(stride).is_some()).unwrap_or(0);
     let round = walk[first..].iter().chain(&walk[..first]);
-    let places: Vec<Result<usize, usize>> =
-        round.map(|stride| contact(stride).map_or_else(|| Ok(nodes.at(place(bar, map, stride, step))), Err)).collect();
-    let Some(mut before) = places.iter().rev().find_map(|place| place.ok()) else { return };
+    let rule = |stride: &Stride| rule(bar, map, stride);
+    let places: Vec<Result<(usize, usize), usize>> = round
+        .map(|stride| contact(stride).map_or_else(|| Ok(nodes.ends(stride.0, rule(stride), (step, weight))), Err))
+        .collect();
+    let Some((_, mut before)) = places.iter().rev().find_map(|place| place.ok()) else { return };
     let mut passed = None;
     for place in places {
         match place {
             Err(contact) => passed = Some(contact),
-            Ok(node) => {
+            Ok((node, leaving)) => {
                 nodes.feed(before, node, weight, passed.map(|at| (at, bar.contacts[at].transmission as f64 / 20.0)));
-                (before, passed) = (node, None);
+                (before, passed) = (leaving, None);
             }
         }
     }
 }
 
-fn place(bar: &PixelBar, map: &BTreeMap<Pixel, Matter>, stride: &Stride, step: (bool, usize)) -> Place {
+fn rule(bar: &PixelBar, map: &BTreeMap<Pixel, Matter>, stride: &Stride) -> Rule {
     let filling = |pixel: &Pixel| match map.get(pixel) {
         Some(Matter::Gas { filling, .. }) => Some(*filling),
         _ => None,
     };
-    let [rim, interface, opposite] = bar.full;
-    let own = filling(&stride.1).unwrap_or(0);
-    let full = match filling(&stride.2) {
-        None => rim,
-        Some(other) => bar.own_mixing(stride.1, stride.2).unwrap_or(if own * other < 0 { opposite } else { interface }),
+    let whole = |full: bool| if full { Rule::Full } else { Rule::None };
+    let of = |kind: usize| match bar.over_um[kind] {
+        Some(length) => Rule::Over((-f64::from(PIXEL_UM) / f64::from(length)).exp()),
+        None => whole(bar.full[kind]),
     };
-    (stride.0, (!full).then_some(step))
+    let own = filling(&stride.1).unwrap_or(0);
+    match filling(&stride.2) {
+        None => of(0),
+        Some(other) => {
+            let kind = if own * other < 0 { 2 } else { 1 };
+            bar.own_mixing(stride.1, stride.2).map_or_else(|| of(kind), whole)
+        }
+    }
 }
 
 impl Nodes {
+    /// The nodes in which a channel enters and leaves a pixel edge.
+    fn ends(&mut self, middle: (i32, i32), rule: Rule, (step, weight): ((bool, usize), f64)) -> (usize, usize) {
+        let own = matches!(rule, Rule::None | Rule::Over(_)).then_some(step);
+        let entering = self.at((middle, own, Side::Entering));
+        let Rule::Over(kept) = rule else { return (entering, entering) };
+        let leaving = self.at((middle, own, Side::Leaving));
+        let (_, steps) = self.blended.entry(middle).or_insert_with(|| (kept, Blended::new()));
+        steps.entry(step).or_insert((entering, leaving, 0.0)).2 += weight;
+        (entering, leaving)
+    }
+
+    /// Along each pixel edge the departure from the mean keeps its share; the mean does not change.
+    fn blend(&mut self) {
+        for (kept, steps) in std::mem::take(&mut self.blended).into_values() {
+            let whole: f64 = steps.values().map(|(_, _, weight)| weight).sum();
+            for (own, &(_, leaving, weight)) in &steps {
+                for (other, &(entering, _, from)) in &steps {
+                    let share = (1.0 - kept) * from / whole + if own == other { kept } else { 0.0 };
+                    *self.feeds[leaving].entry(Fed::Node(entering)).or_default() += weight * share;
+                }
+            }
+        }
+    }
+
     fn at(&mut self, place: Place) -> usize {
         let next = self.index.len();
         let at = *self.index.entry(place).or_insert(next);
@@ -242,11 +296,10 @@ impl Nodes {
     }
 }
 
-/// Checks the bars of some seeds; gives how many were solved and how many the program refused.
-fn compare(seeds: std::ops::Range<u64>) -> (usize, usize) {
+/// Checks bars; gives how many were solved and how many the program refused.
+fn compare(bars: impl Iterator<Item = (u64, PixelBar)>) -> (usize, usize) {
     let (mut solved, mut refused) = (0, 0);
-    for seed in seeds {
-        let bar = PixelBar::new(seed);
+    for (seed, bar) in bars {
         let Some(made) = accepted(&bar) else {
             refused += 1;
             continue;
@@ -279,6 +332,14 @@ fn accepted(bar: &PixelBar) -> Option<Made> {
 /// Own algebra: the second solver above.
 #[test]
 fn a_solver_on_pixels_finds_the_same_conductance_matrix() {
-    let (solved, refused) = compare(0..600);
+    let (solved, refused) = compare((0..600).map(|seed| (seed, PixelBar::new(seed))));
     assert!(solved >= 400, "{solved} solved, {refused} refused");
+}
+
+/// The same with lengths over which channels mix: on pixels each edge of 10 µm mixes for itself, and the exponentials of a
+/// piece multiply.
+#[test]
+fn a_solver_on_pixels_mixes_over_lengths_alike() {
+    let (solved, refused) = compare((0..400).map(|seed| (seed, PixelBar::with_lengths(seed))));
+    assert!(solved >= 250, "{solved} solved, {refused} refused");
 }

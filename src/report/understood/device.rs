@@ -6,8 +6,10 @@ use crate::device::ContactIdx;
 use crate::device::ContactShape;
 use crate::device::Corner;
 use crate::device::Device;
+use crate::device::Drive;
 use crate::device::Edge;
 use crate::device::EdgeRules;
+use crate::device::Groups;
 use crate::device::Ladder;
 use crate::device::MesaShape;
 use crate::device::Mixing;
@@ -38,7 +40,8 @@ pub fn understood_device(file: &str, device: &Device, rims: Option<&[Vec<Contact
         .with("gates", overlays(OverlayKind::Gate))
         .with("steps", overlays(OverlayKind::Step))
         .saying("plateaus", vec![ladder(&device.ladder)])
-        .saying("mixing", vec![mixing(&device.edge)])
+        .saying("mixing", std::iter::once(mixing(&device.edge)).chain(device.groups.as_ref().map(groups)).collect())
+        .saying("driven by", driver(device))
         .with("points", device.points.iter().map(|point| point_row(device, point)).collect())
         .saying("assumed", unnamed_gates(device))
         .saying("readings", vec![readings(device)])
@@ -184,6 +187,22 @@ fn mixing(edge: &EdgeRules) -> String {
     format!("rim {rim}; borders between regions of one sign {interface}; between opposite signs {opposite}")
 }
 
+fn groups(groups: &Groups) -> String {
+    let steps = |group: &Vec<usize>| group.iter().map(usize::to_string).collect::<Vec<_>>().join(" with ");
+    let all: Vec<String> = groups.steps.iter().map(steps).collect();
+    format!("ladder steps in groups, 1 outermost: {}; between groups {}", all.join(", "), rule(&groups.between))
+}
+
+/// Said where it is not the field.
+fn driver(device: &Device) -> Vec<String> {
+    match device.driven_by {
+        Drive::Field => Vec::new(),
+        Drive::Magnetisation => {
+            vec!["magnetisation: the polarity is its, positive fillings run clockwise at +".to_owned()]
+        }
+    }
+}
+
 fn point_row(device: &Device, point: &OperatingPoint) -> Vec<String> {
     let volts = point.gates_v.iter().map(|(gate, volts)| {
         let name = device.overlays.get(gate.0).map_or("", |overlay| overlay.name.as_str());
@@ -207,7 +226,7 @@ fn unnamed_gates(device: &Device) -> Vec<String> {
         (!unnamed.is_empty())
             .then(|| format!("{names} {verb} the bulk filling {filling} at “{}”: not named there", point.name))
     };
-    device.points.iter().filter_map(line).collect()
+    device.points.iter().filter(|point| point.modes.is_none()).filter_map(line).collect()
 }
 
 fn readings(device: &Device) -> String {
