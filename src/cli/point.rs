@@ -37,7 +37,7 @@ pub fn solve_all<'a>(loaded: &'a Loaded, asked: impl Fn(usize) -> Asked) -> Vec<
 
 /// Puts beside every reading of a point why it is what it is.
 pub fn explain(loaded: &Loaded, solved: &mut SolvedPoint) -> Result<(), Diagnostic> {
-    let texts = report::Texts::built_in()?;
+    let texts = report::Texts::built_in(report::driver(&loaded.device))?;
     let setup = setup(loaded, solved.point, solved.polarity);
     let (device, network) = (&loaded.device, &loaded.network);
     let source = report::WhySource { device, network, point: solved.point, polarity: solved.polarity };

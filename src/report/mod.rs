@@ -50,6 +50,7 @@ pub use expect::expected_output;
 pub use expect::state_words;
 pub use file_names::file_stem;
 pub use file_names::next_revision;
+pub use names::driver;
 pub use numbers::Numbers;
 pub use numbers::numbers;
 pub use printed::Printed;

@@ -161,7 +161,7 @@ fn stated_shares_satisfy_the_conductance_matrix() {
 /// All that a contact absorbs is told, and no contact, mixture or border is named that is not there.
 #[test]
 fn explanations_speak_of_what_there_is() {
-    let texts = Texts::built_in().unwrap();
+    let texts = Texts::built_in("field").unwrap();
     each_explanation(|made, prediction, row, why| {
         let expected = &prediction.expected[row];
         if let Why::Number(explanation) = why {
@@ -198,7 +198,7 @@ fn told(text: &str, reading: &str, polarity: Polarity) -> String {
     let prediction = made.predict(0, polarity, &[reading]);
     let why = edgesheet::resistance::why(&made.network, &setup(&made, polarity), &prediction, 0).unwrap();
     let source = WhySource { device: &made.device, network: &made.network, point: &made.device.points[0], polarity };
-    let texts = Texts::built_in().unwrap();
+    let texts = Texts::built_in("field").unwrap();
     edgesheet::report::why_sentences(source, &prediction.expected[0], &why, &texts).unwrap().join("\n")
 }
 

@@ -187,10 +187,11 @@ fn polarity(
     (sign, solution, beside): (&str, &Prediction, &Beside),
 ) -> PolarityNumbers {
     let device = sources.device;
+    let other = if point.point.edge.rim == Mixing::Full { &beside.unmixed } else { &beside.mixed };
     let named = solution.expected.iter().enumerate();
     let readings = named.map(|(at, expected)| ReadingNumbers {
         name: point.names.get(at).cloned().flatten(),
-        other_mixing_ohm: beside.other_mixing.get(at).and_then(|other| other.ohm),
+        other_mixing_ohm: other.get(at).and_then(|other| other.ohm),
         parts: beside.corrections.get(at).map_or_else(Vec::new, |found| parts(found)),
         ..reading(device, expected)
     });

@@ -12,6 +12,7 @@ pub use text::text;
 use serde::Serialize;
 
 use crate::device::Device;
+use crate::device::Drive;
 use crate::device::OperatingPoint;
 use crate::diagnostic::Diagnostic;
 use crate::network::Network;
@@ -55,6 +56,7 @@ struct Fields {
     away: bool,
     electrons: bool,
     holes: bool,
+    modes: bool,
     cut_out: bool,
     name: String,
     inlet: String,
@@ -106,7 +108,7 @@ fn fields(source: WhySource, expected: &Expected, why: &Why) -> Fields {
     let WhySource { device, network, point, polarity } = source;
     let [electrons, holes] = [false, true].map(|negative| carries(point, negative));
     let mixtures = mixtures(why);
-    let phrases = Phrases { device, network, both_signs: electrons && holes, mixtures: &mixtures };
+    let phrases = Phrases { device, network, signs: signs(device, point, electrons && holes), mixtures: &mixtures };
     let [inlet, outlet] = expected.reading.current.map(|contact| phrases.contact(contact));
     let [plus, minus] = expected.reading.voltage.map(|contact| phrases.contact(contact));
     let (explanation, lost) = match why {
@@ -118,6 +120,7 @@ fn fields(source: WhySource, expected: &Expected, why: &Why) -> Fields {
         away: polarity == Polarity::Away,
         electrons,
         holes,
+        modes: point.modes.is_some(),
         cut_out: strands().flat_map(|strand| &strand.route).any(|stretch| matches!(stretch, Stretch::CutOut(_))),
         name: names::reading_name(device, &expected.reading),
         inlet,
@@ -145,6 +148,15 @@ fn mixtures(why: &Why) -> Vec<Origin> {
 fn carries(point: &OperatingPoint, negative: bool) -> bool {
     let fillings = std::iter::once(&point.bulk).chain(point.fillings.iter().map(|(_, filling)| filling));
     fillings.filter(|filling| !filling.is_zero()).any(|filling| filling.is_negative() == negative)
+}
+
+/// Words for channels of either sense, where both run.
+fn signs(device: &Device, point: &OperatingPoint, both_signs: bool) -> Option<[&'static str; 2]> {
+    match (point.modes, device.driven_by) {
+        (Some(modes), _) => (modes.forward > 0 && modes.backward > 0).then_some(["forward ", "backward "]),
+        (None, Drive::Magnetisation) => both_signs.then_some(["positive ", "negative "]),
+        (None, Drive::Field) => both_signs.then_some(["electron ", "hole "]),
+    }
 }
 
 fn lost_fields(lost: &NoNumber, phrases: Phrases) -> LostFields {

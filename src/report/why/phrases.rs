@@ -23,8 +23,8 @@ use crate::resistance::Stretch;
 pub struct Phrases<'a> {
     pub device: &'a Device,
     pub network: &'a Network,
-    /// Whether there are carriers of both signs, so that each must be named.
-    pub both_signs: bool,
+    /// Words for channels of either sense where both run, so that each must be named.
+    pub signs: Option<[&'static str; 2]>,
     /// The mixtures that are spoken of, in the order of their steps.
     pub mixtures: &'a [Origin],
 }
@@ -32,10 +32,10 @@ pub struct Phrases<'a> {
 impl Phrases<'_> {
     /// `3 channels`, `1 hole channel`, `channels of 1/3 e²/h`.
     pub fn channels(&self, weight: &Number, carrier: Option<Carrier>) -> String {
-        let sign = match carrier.filter(|_| self.both_signs) {
-            Some(Carrier::Electron) => "electron ",
-            Some(Carrier::Hole) => "hole ",
-            None => "",
+        let sign = match (carrier, self.signs) {
+            (Some(Carrier::Electron), Some([forward, _])) => forward,
+            (Some(Carrier::Hole), Some([_, backward])) => backward,
+            _ => "",
         };
         match number(weight) {
             one if one == "1" => format!("1 {sign}channel"),
@@ -111,7 +111,7 @@ impl Phrases<'_> {
     fn count(&self, strand: &Strand) -> String {
         let named = self.channels(&strand.weight, strand.carrier);
         let plain = named.strip_suffix(" channels").or(named.strip_suffix(" channel"));
-        plain.filter(|_| !self.both_signs).map_or(named.clone(), str::to_owned)
+        plain.filter(|_| self.signs.is_none()).map_or(named.clone(), str::to_owned)
     }
 
     /// `contact 6`, `mixture A`.

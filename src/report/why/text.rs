@@ -5,10 +5,10 @@ use crate::quantity::Polarity;
 use crate::report::ReadingWhy;
 use crate::report::SolvedPoint;
 use crate::report::names::plain_name;
+use crate::report::names::side;
 use crate::report::table_text::WIDTH;
 use crate::report::table_text::closing;
 use crate::report::table_text::heading;
-use crate::report::table_text::side;
 use crate::report::table_text::wrapped;
 
 /// Sentences without marks.
@@ -32,16 +32,18 @@ pub fn text(device: &Device, solved: &[SolvedPoint]) -> String {
         for (row, expected) in first.prediction.expected.iter().enumerate() {
             let reading = plain_name(device, &expected.reading);
             let explained = both.iter().filter_map(|point| Some((point, point.why.get(row)?.as_ref()?)));
-            explained.for_each(|(point, why)| text.push_str(&block(&reading, point.polarity, why)));
+            explained.for_each(|(point, why)| {
+                text.push_str(&block(&reading, &side(device, point.polarity), (point.polarity, why)))
+            });
         }
     }
-    text + &closing(None)
+    text + &closing(device, None)
 }
 
-fn block(reading: &str, polarity: Polarity, why: &ReadingWhy) -> String {
+fn block(reading: &str, side: &str, (polarity, why): (Polarity, &ReadingWhy)) -> String {
     let sentences = plain(&why.sentences);
     let lines: String = sentences.iter().enumerate().map(|(at, sentence)| numbered(at + 1, sentence)).collect();
-    format!("{reading}, {} ({})\n{lines}\n", side(polarity), polarity.sign())
+    format!("{reading}, {side} ({})\n{lines}\n", polarity.sign())
 }
 
 /// Lines under a number, indented behind it.
