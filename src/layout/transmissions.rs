@@ -9,9 +9,10 @@ use crate::layout::FaceLabel;
 use crate::layout::Topology;
 use crate::number::Rational;
 
-/// Faults of contacts with more than one transmission; none where no point could be read.
+/// Faults of contacts with more than one transmission; none where no point could be read, nor beside edge modes, which take
+/// one number wherever a contact lies.
 pub(super) fn checks(device: &Device, topology: &Topology) -> Vec<Diagnostic> {
-    if device.points.is_empty() {
+    if device.points.is_empty() || device.points.iter().any(|point| point.modes.is_some()) {
         return Vec::new();
     }
     let contacts = device.contacts.iter().enumerate().filter(|(_, contact)| contact.transmission.len() > 1);

@@ -61,16 +61,16 @@ fn is_formless(expected: &Expected) -> bool {
 
 pub(super) fn closing(device: &Device, cooldown: Option<&Cooldown>) -> String {
     let klitzing = printed::significant(KLITZING.value, 12);
-    let driver = match device.driven_by {
-        Drive::Field => "Field",
-        Drive::Magnetisation => "Magnetisation",
+    let polarity = match device.driven_by {
+        Drive::Field => "Field +: out of the chip face, toward you. ",
+        Drive::Magnetisation => "Magnetisation +: out of the chip face, toward you.\n",
     };
     let meters = match cooldown {
         Some(_) => "\"shows\": what the first meter shows behind this cooldown's lines.\n",
         None => "",
     };
     format!(
-        "{meters}{driver} +: out of the chip face, toward you. R_ij,kl = (V_k - V_l)/I, current in at i and out at j.\n\
+        "{meters}{polarity}R_ij,kl = (V_k - V_l)/I, current in at i and out at j.\n\
          h/e\u{b2} = {klitzing} \u{3a9} (exact h and e of the SI, 2019).\n"
     )
 }

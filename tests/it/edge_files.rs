@@ -73,7 +73,8 @@ fn edge_modes_are_told_and_gates_change_nothing() {
 fn the_sheet_of_a_magnetised_film_speaks_of_its_magnetisation() {
     let folder = with_demo("magnetised", "anomalous-film");
     run(&folder, "sheet device.toml cooldown.toml -o out").answer();
-    let record = fs::read_to_string(folder.join("out/AF-31_AF-31-c2_r1.json")).unwrap();
+    let record: Value = serde_json::from_slice(&fs::read(folder.join("out/AF-31_AF-31-c2_r1.json")).unwrap()).unwrap();
+    let record = record["printed"].to_string();
     let page = fs::read_to_string(folder.join("out/AF-31_AF-31-c2_r1.html")).unwrap();
     for text in [&record, &page] {
         for wrong in ["field toward", "field away", "Field toward", "Field away", "electrons run", "holes run"] {
@@ -92,7 +93,8 @@ fn the_sheet_prints_the_rule_of_mixing() {
     run(&folder, "sheet device.toml cooldown.toml -o out").answer();
     let record: Value =
         serde_json::from_slice(&fs::read(folder.join("out/KR-0610_KR-0610-c1_r1.json")).unwrap()).unwrap();
-    let rules: Vec<&str> = record["rules"].as_array().unwrap().iter().map(|rule| rule.as_str().unwrap()).collect();
+    let rules: Vec<&str> =
+        record["printed"]["rules"].as_array().unwrap().iter().map(|rule| rule.as_str().unwrap()).collect();
     let all = rules.join("\n");
     for part in ["over ℓ = 60 µm", "1 with 3, 2 with 4", "over ℓ = 900 µm", "exp(−L/ℓ)", "twice this ℓ"] {
         assert!(all.contains(part), "{part} is not in\n{all}");
