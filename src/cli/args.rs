@@ -50,6 +50,9 @@ pub struct SheetOptions {
     /// Replace a sheet of the same name
     #[arg(long)]
     pub replace: bool,
+    /// Write every drawing and chart also as SVG and PNG, beside the sheet
+    #[arg(long)]
+    pub figures: bool,
     /// Paper of the PDF
     #[arg(long, value_enum, default_value_t = PaperSize::A4)]
     pub paper: PaperSize,
@@ -78,6 +81,12 @@ pub struct ExpectOptions {
     /// Say step by step why each reading is what it is
     #[arg(long, conflicts_with = "all")]
     pub why: bool,
+    /// With --why: folder into which to draw, as SVG and PNG, the channels that make each number
+    #[arg(short, long, value_name = "DIR", requires = "why")]
+    pub output: Option<PathBuf>,
+    /// Replace drawings of the same names
+    #[arg(long, requires = "output")]
+    pub replace: bool,
     /// Machine output
     #[arg(long)]
     pub json: bool,

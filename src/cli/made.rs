@@ -12,8 +12,11 @@ use crate::cli::published::Results;
 use crate::cli::select;
 use crate::compare::Verdict;
 use crate::diagnostic::Diagnostic;
+use crate::figure::scene::Scene;
 use crate::report;
+use crate::report::Beside;
 use crate::report::Report;
+use crate::report::SolvedPoint;
 use crate::sheet::Paper;
 
 /// A sheet, not yet written.
@@ -28,8 +31,26 @@ pub struct Made {
     pub spelled: Option<Diagnostic>,
 }
 
+/// What else can be made of a sheet before it is written.
+pub struct Making<'a> {
+    pub report: &'a Report,
+    /// Every drawing and chart.
+    pub scenes: Vec<Scene>,
+    pub solved: &'a [SolvedPoint<'a>],
+    pub beside: &'a [Beside],
+}
+
 /// Solves, compares, draws and composes.
 pub fn make(loaded: &Loaded, options: &Options) -> Result<Made, Failure> {
+    make_with(loaded, options, |_| Ok(())).map(|(made, ())| made)
+}
+
+/// The same with something else that is made from the same solutions.
+pub fn make_with<T>(
+    loaded: &Loaded,
+    options: &Options,
+    more: impl Fn(&Making) -> Result<T, Diagnostic>,
+) -> Result<(Made, T), Failure> {
     let paper = paper(options).map_err(Failure::one)?;
     let (solved, beside) = solve_all_for_sheet(loaded, |point| select::for_sheet(loaded, point));
     let (comparison, rows) = judged::comparison(loaded, options.limit_in_u).unzip();
@@ -44,7 +65,10 @@ pub fn make(loaded: &Loaded, options: &Options) -> Result<Made, Failure> {
     let pages = published.pages(&report, paper);
     let spelled = crate::sheet::spelled(&pages.scenes);
     let pdf = published.pdf(&report, &record, pages);
-    Ok(Made { record, html, pdf, spelled, verdict: comparison.map(|comparison| comparison.verdict), report })
+    let making = Making { report: &report, scenes: published.scenes(&report), solved: &solved, beside: &beside };
+    let more = more(&making).map_err(Failure::one)?;
+    let verdict = comparison.map(|comparison| comparison.verdict);
+    Ok((Made { record, html, pdf, spelled, verdict, report }, more))
 }
 
 fn paper(options: &Options) -> Result<Paper, Diagnostic> {

@@ -5,12 +5,10 @@ use crate::cli::load::Loaded;
 use crate::device::ContactIdx;
 use crate::device::Mixing;
 use crate::device::OperatingPoint;
-use crate::diagnostic::Diagnostic;
 use crate::quantity::Polarity;
 use crate::report;
 use crate::report::Beside;
 use crate::report::IsolatedRegion;
-use crate::report::ReadingWhy;
 use crate::report::SolvedPoint;
 use crate::resistance::Candidates;
 use crate::resistance::ClosedForms;
@@ -33,22 +31,6 @@ pub fn forms(loaded: &Loaded, point: &OperatingPoint, setup: &Setup) -> ClosedFo
 /// Every point at both polarities, `+` first, with the readings asked for at each.
 pub fn solve_all<'a>(loaded: &'a Loaded, asked: impl Fn(usize) -> Asked) -> Vec<SolvedPoint<'a>> {
     solved(loaded, asked).into_iter().map(|solution| solution.solved).collect()
-}
-
-/// Puts beside every reading of a point why it is what it is.
-pub fn explain(loaded: &Loaded, solved: &mut SolvedPoint) -> Result<(), Diagnostic> {
-    let texts = report::Texts::built_in(report::driver(&loaded.device))?;
-    let setup = setup(loaded, solved.point, solved.polarity);
-    let (device, network) = (&loaded.device, &loaded.network);
-    let source = report::WhySource { device, network, point: solved.point, polarity: solved.polarity };
-    let explained = |(row, expected): (usize, &Expected)| {
-        let Some(why) = crate::resistance::why(network, &setup, &solved.prediction, row) else { return Ok(None) };
-        let sentences = report::why_sentences(source, expected, &why, &texts)?;
-        Ok(Some(ReadingWhy { why, sentences }))
-    };
-    let all = solved.prediction.expected.iter().enumerate();
-    solved.why = all.map(explained).collect::<Result<_, _>>()?;
-    Ok(())
 }
 
 /// The same with what a sheet says beside the solutions.

@@ -10,6 +10,7 @@ use crate::figure::scene::Scene;
 use crate::layout::Point;
 use crate::report::Beside;
 use crate::report::Input;
+use crate::report::PointReport;
 use crate::report::PointSource;
 use crate::report::Report;
 use crate::report::RowSource;
@@ -85,6 +86,14 @@ impl<'a> Published<'a> {
         }
     }
 
+    /// Every drawing and chart, in the order of [`report::pictures`](crate::report::pictures).
+    pub fn scenes(&self, report: &Report) -> Vec<Scene> {
+        let of_point = |(point, drawings): (&PointReport, &[Scene; 2])| -> Vec<Scene> {
+            drawings.iter().cloned().chain(sheet::chart_scenes(point)).collect()
+        };
+        report.points.iter().zip(&self.drawings).flat_map(of_point).collect()
+    }
+
     /// The HTML twin.
     pub fn html(&self, report: &Report) -> Result<String, Diagnostic> {
         let pictures: Vec<[String; 2]> =
@@ -130,7 +139,7 @@ fn draw(loaded: &Loaded, solved: &SolvedPoint) -> Scene {
 }
 
 /// A long mesa with many contacts or long names takes the whole width, and its two drawings stand one below the other.
-fn size_mm(loaded: &Loaded) -> (f64, f64) {
+pub fn size_mm(loaded: &Loaded) -> (f64, f64) {
     let contacts = &loaded.device.contacts;
     let crowded = contacts.len() > COLUMN_CONTACTS || contacts.iter().any(|one| one.name.chars().count() > COLUMN_NAME);
     if crowded && length_to_width(loaded) >= LEAST_WIDE_RATIO {

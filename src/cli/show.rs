@@ -69,6 +69,12 @@ pub fn written(report: &Report, paths: &[PathBuf]) -> Result<Finished, Failure> 
     text(&(lines.join("\n") + "\n"))
 }
 
+/// Files written beside an answer, on standard error: standard output is the answer's.
+pub fn drawn(paths: &[PathBuf]) {
+    let lines: String = paths.iter().map(|path| format!("wrote {}\n", path.display())).collect();
+    let _ = anstream::stderr().lock().write_all(lines.as_bytes());
+}
+
 /// Notices, so that nothing a user wrote is passed over in silence.
 pub fn notices(notices: &[Diagnostic]) {
     findings(notices);

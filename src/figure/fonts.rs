@@ -8,8 +8,10 @@
 //! share a glyph. They lack ⁺ ⁻ ₀–₉, which are set as raised and lowered signs, and ⊙ ⊗ ↻ ℏ, which drawings make
 //! from lines.
 
+mod outline;
 mod spelling;
 
+pub use outline::outline;
 pub use spelling::missing;
 pub use spelling::missing_in;
 pub use spelling::spoken;

@@ -1,6 +1,6 @@
 //! Drawings and charts: finished scenes in millimetres, and their SVG.
 //!
-//! Owns: [`scene`], the chip drawing, text measuring, SVG. Takes layouts, channels and finished numbers, gives scenes.
+//! Owns: [`scene`], the chip drawing, text measuring, SVG and PNG. Takes layouts, channels and finished numbers, gives scenes.
 //! Must never solve anything or do statistics.
 
 pub mod fonts;
@@ -8,6 +8,9 @@ pub mod scene;
 
 mod chart;
 mod chip;
+mod outlined;
+mod picture;
+mod png;
 mod svg;
 
 pub use chart::Chart;
@@ -25,4 +28,7 @@ pub use chip::OverlayName;
 pub use chip::channel_pen;
 pub use chip::draw_chip;
 pub use chip::key_pens;
+pub use picture::PictureData;
+pub use png::to_png;
+pub use svg::picture_svg;
 pub use svg::to_svg;

@@ -5,6 +5,8 @@ use std::fmt::Write;
 use crate::figure::fonts::Face;
 use crate::figure::fonts::MM_PER_PT;
 use crate::figure::fonts::pieces;
+use crate::figure::outlined::outlined;
+use crate::figure::picture::PictureData;
 use crate::figure::scene::At;
 use crate::figure::scene::Colour;
 use crate::figure::scene::Mark;
@@ -16,11 +18,35 @@ use crate::figure::scene::TextMark;
 
 /// The document. One user unit is 1 mm; text names the family with a fallback.
 pub fn to_svg(scene: &Scene) -> String {
+    document(scene, " font-family=\"'Noto Sans', sans-serif\"", "")
+}
+
+/// The document as a file of its own: letters as shapes, so that it looks the same where our fonts are not installed, and
+/// what it shows in its title, description and metadata (SVG 1.1, chapters 5.4 and 21; terms of the Dublin Core).
+pub fn picture_svg(scene: &Scene, data: &PictureData) -> String {
+    let attributes = concat!(
+        " xmlns:rdf=\"http://www.w3.org/1999/02/22-rdf-syntax-ns#\"",
+        " xmlns:dc=\"http://purl.org/dc/elements/1.1/\" stroke-linejoin=\"round\""
+    );
+    let PictureData { title, description, software, source } = data;
+    let terms = [("title", title), ("description", description), ("creator", software), ("source", source)];
+    let terms: String =
+        terms.iter().map(|(term, text)| format!("<dc:{term}>{}</dc:{term}>\n", escaped(text))).collect();
+    let own = format!(
+        "<title>{}</title>\n<desc>{}</desc>\n<metadata>\n<rdf:RDF>\n<rdf:Description rdf:about=\"\">\n{terms}\
+         </rdf:Description>\n</rdf:RDF>\n</metadata>\n",
+        escaped(title),
+        escaped(description)
+    );
+    document(&outlined(scene), attributes, &own)
+}
+
+fn document(scene: &Scene, attributes: &str, own: &str) -> String {
     let (width, height) = (fixed(scene.width_mm), fixed(scene.height_mm));
     let mut svg = String::from("<?xml version=\"1.0\" encoding=\"UTF-8\"?>\n");
     let size = format!("width=\"{width}mm\" height=\"{height}mm\" viewBox=\"0 0 {width} {height}\"");
-    let family = "font-family=\"'Noto Sans', sans-serif\"";
-    line(&mut svg, &format!("<svg xmlns=\"http://www.w3.org/2000/svg\" version=\"1.1\" {size} {family}>"));
+    line(&mut svg, &format!("<svg xmlns=\"http://www.w3.org/2000/svg\" version=\"1.1\" {size}{attributes}>"));
+    svg.push_str(own);
     for mark in &scene.marks {
         match mark {
             Mark::Path(mark) => path(&mut svg, mark),

@@ -85,6 +85,12 @@ pub fn provenance(sources: &Sources, texts: &Texts) -> Result<Provenance, Diagno
     })
 }
 
+/// Program and version.
+pub fn program(version: &str, texts: &Texts) -> Result<String, Diagnostic> {
+    let lines = texts.lines("provenance.txt", &ProvenanceFields { version })?;
+    Ok(lines.into_iter().next().unwrap_or_default())
+}
+
 /// The conventional value is named so that nobody wonders which one was used.
 fn constants() -> String {
     let (now, then) = (printed::decimals(KLITZING.value, 10), printed::decimals(KLITZING_1990.value, 3));

@@ -60,6 +60,12 @@ fn is_device(name: &str) -> bool {
     ["con", "prn", "aux", "nul"].contains(&first.as_str()) || numbered("com") || numbered("lpt")
 }
 
+/// A name that every file system takes, for use beside a number or an id that makes it unique.
+pub(super) fn legible(name: &str) -> String {
+    let plain: String = name.chars().map(|c| if c.is_ascii_alphanumeric() { c } else { '-' }).take(LONGEST).collect();
+    plain.trim_matches('-').to_owned()
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

@@ -51,7 +51,7 @@ fn conditions(sources: &Sources, cooldown: &Cooldown) -> String {
     parts.into_iter().flatten().collect::<Vec<_>>().join(", ")
 }
 
-fn foot(device: &Device, cooldown: Option<&Cooldown>) -> String {
+pub(super) fn foot(device: &Device, cooldown: Option<&Cooldown>) -> String {
     match cooldown {
         Some(cooldown) => format!("{} · {} · revision {}", device.id, cooldown.id, cooldown.revision),
         None => format!("{} · expected values", device.id),

@@ -25,6 +25,7 @@ mod strip;
 mod table;
 mod typeset;
 
+pub use charts::scenes as chart_scenes;
 pub use compose::Pages;
 pub use compose::compose;
 pub use document::document;

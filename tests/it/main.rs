@@ -27,6 +27,7 @@ mod literature;
 mod microscopic;
 mod pages;
 mod paper;
+mod pictures;
 mod pixel_bar;
 mod pixel_dice;
 mod program;

@@ -1,9 +1,11 @@
 //! Why a reading has its number, in numbered sentences.
 
+mod names;
 mod output;
 mod phrases;
 mod text;
 
+pub use names::names;
 pub use output::WhyOutput;
 pub use output::output;
 pub use text::plain;
@@ -20,7 +22,7 @@ use crate::number::Number;
 use crate::quantity::Polarity;
 use crate::report::Printed;
 use crate::report::Texts;
-use crate::report::names;
+use crate::report::names::reading_name;
 use crate::report::why::phrases::Phrases;
 use crate::report::why::phrases::number;
 use crate::resistance::Arrival;
@@ -122,7 +124,7 @@ fn fields(source: WhySource, expected: &Expected, why: &Why) -> Fields {
         holes,
         modes: point.modes.is_some(),
         cut_out: strands().flat_map(|strand| &strand.route).any(|stretch| matches!(stretch, Stretch::CutOut(_))),
-        name: names::reading_name(device, &expected.reading),
+        name: reading_name(device, &expected.reading),
         inlet,
         outlet,
         plus,

@@ -192,6 +192,18 @@ impl Why {
     }
 }
 
+impl Why {
+    /// Potentials of the bundles that make the reading, as drawings show them; none for all others. None altogether where
+    /// no current can flow.
+    pub fn potentials(&self, prediction: &Prediction, current: [ContactIdx; 2]) -> Option<Vec<Option<Number>>> {
+        let bundles = self.bundles();
+        let mut potentials = prediction.bundle_potentials(current)?;
+        let others = potentials.iter_mut().enumerate().filter(|(at, _)| !bundles.contains(&BundleIdx(*at)));
+        others.for_each(|(_, potential)| *potential = None);
+        Some(potentials)
+    }
+}
+
 impl Explanation {
     /// All channels that the steps and the balance speak of.
     pub fn strands(&self) -> impl Iterator<Item = &Strand> {
