@@ -11,8 +11,10 @@ use sha2::Digest;
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize, JsonSchema)]
 #[serde(rename_all = "lowercase")]
 pub enum Role {
-    /// The device file.
+    /// The device file, or that of a bench.
     Device,
+    /// A device file that a bench names.
+    Part,
     /// The cooldown file.
     Cooldown,
     /// The table of measured readings.

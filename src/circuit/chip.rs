@@ -3,11 +3,14 @@
 use nalgebra::DMatrix;
 
 use crate::conductance::Conductance;
+use crate::conductance::Link;
 
 /// The conductance matrix of the device as the circuit uses it: floats in e²/h, rows that sum to zero.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Chip {
     pub(super) matrix: DMatrix<f64>,
+    /// Wires between contacts, in h/e².
+    pub(super) links: Vec<Link<f64>>,
 }
 
 impl Chip {
@@ -23,7 +26,7 @@ impl Chip {
         for row in 0..contacts {
             matrix[(row, row)] = -matrix.row(row).sum();
         }
-        Self { matrix }
+        Self { matrix, links: conductance.links() }
     }
 
     /// Whether a current can pass from one contact to the other, either way.

@@ -13,6 +13,7 @@ use crate::circuit::Circuit;
 use crate::circuit::Taken;
 use crate::circuit::loads::Load;
 use crate::circuit::loads::loads;
+use crate::circuit::unknowns::Joint;
 use crate::circuit::unknowns::Unknowns;
 use crate::circuit::unknowns::grounded;
 use crate::cooldown::ContactState;
@@ -34,7 +35,7 @@ pub(super) struct Equations {
 
 /// Sets up the circuit; none when the inlet's rack node hangs free.
 pub(super) fn equations(chip: &Chip, circuit: &Circuit, taken: &Taken) -> Option<Equations> {
-    let unknowns = Unknowns::of(circuit);
+    let unknowns = Unknowns::of(chip, circuit);
     let loads = loads(circuit, taken);
     let grounded = grounded(circuit, taken);
     let held = unknowns.held(chip, &loads, &grounded);
@@ -68,7 +69,7 @@ fn chip_rows(chip: &Chip, unknowns: &Unknowns) -> Vec<Row> {
     for (contact, row) in rows.iter_mut().enumerate() {
         (0..unknowns.contacts).for_each(|column| row[column] = chip.matrix[(contact, column)].into());
     }
-    for (at, &[first, other]) in unknowns.links.iter().enumerate() {
+    for (at, &Joint { ends: [first, other], .. }) in unknowns.links.iter().enumerate() {
         rows[first][unknowns.contacts + at] = Complex::ONE;
         rows[other][unknowns.contacts + at] = -Complex::ONE;
     }
@@ -85,13 +86,15 @@ fn rack_rows(circuit: &Circuit, unknowns: &Unknowns, chip_rows: &[Row]) -> Vec<R
     unknowns.rack.iter().enumerate().map(row).collect()
 }
 
-/// I + Σ Y W per rack node, with I = 0 on the chip side of a broken lead; V − V' = 0 per link.
+/// I + Σ Y W per rack node, with I = 0 on the chip side of a broken lead; V − V' = R I per link.
 fn balance(unknowns: &Unknowns, loads: &[Load], chip_rows: &[Row], rack: &[Row]) -> DMatrix<Complex<f64>> {
     let mut matrix = DMatrix::zeros(unknowns.total, unknowns.total);
     chip_rows.iter().enumerate().for_each(|(contact, row)| matrix.set_row(contact, row));
-    for (at, &[first, other]) in unknowns.links.iter().enumerate() {
-        let equal = unit(unknowns.total, first) - unit(unknowns.total, other);
-        matrix.set_row(unknowns.contacts + at, &equal);
+    for (at, &Joint { ends: [first, other], resistance }) in unknowns.links.iter().enumerate() {
+        let mut drop = unit(unknowns.total, first) - unit(unknowns.total, other);
+        // A link carries its current from its first contact to the other.
+        drop[unknowns.contacts + at] = Complex::from(-resistance);
+        matrix.set_row(unknowns.contacts + at, &drop);
     }
     for load in loads {
         let drop = load.to.map_or_else(|| rack[load.from].clone(), |to| &rack[load.from] - &rack[to]);
@@ -128,9 +131,10 @@ fn shorted_links(circuit: &Circuit, taken: &Taken, unknowns: &Unknowns, grounded
             && circuit.lines[*contact].ohm == 0.0
             && is_firm(circuit, taken, *contact)
     };
-    let mut reached: Vec<usize> = unknowns.links.iter().map(|[first, _]| *first).filter(at_ground).collect();
+    let firm = || unknowns.links.iter().enumerate().filter(|(_, joint)| joint.resistance == 0.0);
+    let mut reached: Vec<usize> = firm().map(|(_, joint)| joint.ends[0]).filter(at_ground).collect();
     let mut shorted = Vec::new();
-    for (at, [first, other]) in unknowns.links.iter().enumerate().filter(|(_, [_, other])| at_ground(other)) {
+    for (at, Joint { ends: [first, other], .. }) in firm().filter(|(_, joint)| at_ground(&joint.ends[1])) {
         if reached.contains(first) {
             shorted.push(unknowns.contacts + at);
         }

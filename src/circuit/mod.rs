@@ -16,6 +16,7 @@ mod budget;
 mod chip;
 mod corrections;
 mod equations;
+mod links;
 mod loads;
 mod shown;
 mod solution;
@@ -29,6 +30,7 @@ pub use chip::Chip;
 pub use corrections::Correction;
 pub use corrections::Part;
 pub use corrections::corrections;
+pub use links::links;
 pub use shown::Shown;
 pub use shown::shown;
 

@@ -4,6 +4,7 @@ use crate::circuit::Chip;
 use crate::circuit::Circuit;
 use crate::circuit::Taken;
 use crate::circuit::loads::Load;
+use crate::conductance::Link;
 use crate::cooldown::ContactState;
 
 /// The unknowns of one circuit in order: the potential of every contact on the chip, the current in every link between
@@ -11,17 +12,25 @@ use crate::cooldown::ContactState;
 /// number.
 pub(super) struct Unknowns {
     pub contacts: usize,
-    /// Joined contacts: of each group the first with every other.
-    pub links: Vec<[usize; 2]>,
+    /// Joined contacts (of each group the first with every other) and wires between contacts.
+    pub links: Vec<Joint>,
     /// For every contact the unknown of its rack node: its own number, unless its lead is broken.
     pub rack: Vec<usize>,
     pub total: usize,
 }
 
+/// Two contacts with a current between them beside the chip: V − V' = R I.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(super) struct Joint {
+    pub ends: [usize; 2],
+    /// In h/e²; 0 for contacts that share one potential.
+    pub resistance: f64,
+}
+
 impl Unknowns {
-    pub fn of(circuit: &Circuit) -> Self {
+    pub fn of(chip: &Chip, circuit: &Circuit) -> Self {
         let contacts = circuit.lines.len();
-        let links = links(circuit);
+        let links = links(chip, circuit);
         let mut total = contacts + links.len();
         let mut place = |(contact, state): (usize, &ContactState)| match state {
             ContactState::Open => {
@@ -46,8 +55,8 @@ impl Unknowns {
                 front.extend(edges[at].iter().copied().filter(|&next| !held[next]));
             }
         }
-        for (at, [first, _]) in self.links.iter().enumerate() {
-            held[self.contacts + at] = held[*first];
+        for (at, joint) in self.links.iter().enumerate() {
+            held[self.contacts + at] = held[joint.ends[0]];
         }
         held
     }
@@ -61,7 +70,7 @@ impl Unknowns {
         for row in 0..self.contacts {
             (0..row).filter(|&column| chip.joins(row, column)).for_each(|column| add(row, column));
         }
-        self.links.iter().for_each(|&[a, b]| add(a, b));
+        self.links.iter().for_each(|joint| add(joint.ends[0], joint.ends[1]));
         loads.iter().filter_map(|load| Some((load.from, load.to?))).for_each(|(a, b)| add(self.rack[a], self.rack[b]));
         edges
     }
@@ -75,11 +84,16 @@ pub(super) fn grounded(circuit: &Circuit, taken: &Taken) -> Vec<usize> {
 }
 
 /// Overlapping joins are one group, so that no two links close a loop without resistance.
-fn links(circuit: &Circuit) -> Vec<[usize; 2]> {
+fn links(chip: &Chip, circuit: &Circuit) -> Vec<Joint> {
+    let (firm, wires): (Vec<_>, Vec<_>) = chip.links.iter().partition(|link| link.resistance == 0.0);
+    let joins = circuit.joins.iter().flat_map(|join| join.windows(2)).map(|pair| [pair[0].0, pair[1].0]);
     let mut group: Vec<usize> = (0..circuit.lines.len()).collect();
-    for pair in circuit.joins.iter().flat_map(|join| join.windows(2)) {
-        let (a, b) = (group[pair[0].0], group[pair[1].0]);
+    for [a, b] in joins.chain(firm.iter().map(|link| link.ends.map(|end| end.0))) {
+        let (a, b) = (group[a], group[b]);
         group.iter_mut().filter(|of| **of == a.max(b)).for_each(|of| *of = a.min(b));
     }
-    group.iter().enumerate().filter(|(contact, first)| contact != *first).map(|(at, &first)| [first, at]).collect()
+    let joined = group.iter().enumerate().filter(|(contact, first)| contact != *first);
+    let joined = joined.map(|(at, &first)| Joint { ends: [first, at], resistance: 0.0 });
+    let wire = |link: &Link<f64>| Joint { ends: link.ends.map(|end| end.0), resistance: link.resistance };
+    joined.chain(wires.into_iter().map(wire)).collect()
 }

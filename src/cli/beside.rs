@@ -7,12 +7,14 @@ use std::sync::Arc;
 use crate::cli::load;
 use crate::cli::opened::Kind;
 use crate::cli::opened::Opened;
+use crate::cli::opened::open_named;
 use crate::cli::opened::open_neighbours;
 use crate::cooldown;
 use crate::cooldown::Cooldown;
 use crate::cooldown::Names;
 use crate::device::Device;
 use crate::diagnostic::Findings;
+use crate::diagnostic::Place;
 use crate::diagnostic::Source;
 use crate::files;
 use crate::layout;
@@ -60,7 +62,8 @@ struct Desk<'a> {
 fn known(file: &Opened, findings: &mut Findings) -> Option<Known> {
     let source = file.device()?;
     let id = syntax::text_at(source, &["device", "id"]);
-    let device = load::device_of(source, findings);
+    let mut others = |name: &str, place: &Place| open_named(&file.path, (name, place));
+    let device = load::device_of((source, &mut others), findings);
     let layout = device.as_ref().and_then(|device| findings.take(layout::layout(device)));
     let rims = layout.zip(device.as_ref()).map(|(layout, device)| {
         let network = network::network(&layout, device.contacts.len());

@@ -27,6 +27,7 @@ pub fn run(options: &ExpectOptions) -> Result<Finished, Failure> {
         (false, true) => select::listed(&loaded),
     });
     if options.why {
+        report::why_needs_no_wires(&loaded.device).map_err(Failure::one)?;
         solved.iter_mut().try_for_each(|point| explain(&loaded, point)).map_err(Failure::one)?;
     }
     let drawn = options.output.as_ref().map(|folder| draw(options, folder, (&loaded, &solved))).transpose()?;

@@ -1,6 +1,7 @@
 //! From paths to checked inputs: the head of every command.
 
 use std::path::Path;
+use std::path::PathBuf;
 use std::sync::Arc;
 
 use crate::archive::Kept;
@@ -8,7 +9,9 @@ use crate::archive::Role;
 use crate::cli::Failure;
 use crate::cooldown::Cooldown;
 use crate::device::Device;
+use crate::device::Others;
 use crate::diagnostic::Diagnostic;
+use crate::diagnostic::Faults;
 use crate::diagnostic::Findings;
 use crate::diagnostic::Noted;
 use crate::diagnostic::Place;
@@ -50,7 +53,9 @@ enum Shelf<'a> {
 impl Shelf<'_> {
     fn read(self, role: Role, path: &Path) -> Result<Vec<u8>, Diagnostic> {
         let Self::Kept(kept) = self else { return files::read(path) };
-        let found = kept.iter().find(|file| file.role == role).map(|file| file.bytes.clone());
+        // There is one file of each role, save for parts: these go by their names.
+        let is_it = |file: &&Kept| file.role == role && (role != Role::Part || Path::new(&file.name) == path);
+        let found = kept.iter().find(is_it).map(|file| file.bytes.clone());
         let fault = || Diagnostic::fault("unreadable-file", format!("{} was not kept", path.display()));
         found.ok_or_else(|| fault().hint("the sheet cannot be computed again without it"))
     }
@@ -59,8 +64,7 @@ impl Shelf<'_> {
 fn checked(shelf: Shelf, device: &Path, cooldown: Option<&Path>) -> Result<Loaded, Failure> {
     let mut findings = Findings::default();
     let mut inputs = Vec::new();
-    let device = source((shelf, Role::Device), (device, None), (&mut inputs, &mut findings))
-        .and_then(|text| device_of(&text, &mut findings));
+    let device = described((shelf, device), &mut inputs, &mut findings);
     let layout = device.as_ref().and_then(|device| findings.take(crate::layout::layout(device)));
     let mut measured = Some(Vec::new());
     let mut read_cooldown = None;
@@ -79,16 +83,52 @@ fn checked(shelf: Shelf, device: &Path, cooldown: Option<&Path>) -> Result<Loade
         return Err(Failure::Input(findings.into_faults()));
     };
     let Noted { notices, .. } = findings.finish(()).map_err(Failure::Input)?;
-    let network = crate::network::network(&layout, device.contacts.len());
+    let network = crate::network::of_device(&layout, &device, crate::circuit::links(&device));
     Ok(Loaded { device, layout, network, cooldown: read_cooldown, measured, inputs, notices })
 }
 
-/// The device; where its file has faults, those of what can be drawn of it are told as well.
-pub fn device_of(text: &Arc<Source>, findings: &mut Findings) -> Option<Device> {
-    let device = findings.take(crate::device::from_source(text));
+/// The device; where its file has faults, those of what can be drawn of it are told as well. `others` reads the files that
+/// a bench names.
+pub fn device_of((text, others): (&Arc<Source>, &mut Others), findings: &mut Findings) -> Option<Device> {
+    let device = findings.take(crate::device::with_others(text, others));
     let drawing = if device.is_none() { crate::device::drawing(text) } else { None };
     findings.extend(drawing.iter().flat_map(crate::layout::faults));
     device
+}
+
+/// A device, or a bench with the devices whose files it names.
+fn described((shelf, path): (Shelf, &Path), inputs: &mut Vec<Kept>, findings: &mut Findings) -> Option<Device> {
+    let text = source((shelf, Role::Device), (path, None), (inputs, findings))?;
+    let mut others = |written: &str, place: &Place| part((shelf, path), (written, place), inputs);
+    device_of((&text, &mut others), findings)
+}
+
+/// The text of a device file that a bench names. A file that is named twice goes in once.
+fn part(
+    (shelf, bench): (Shelf, &Path),
+    (written, place): (&str, &Place),
+    inputs: &mut Vec<Kept>,
+) -> Result<Arc<Source>, Faults> {
+    let (mut read, mut findings) = (Vec::new(), Findings::default());
+    let path = match shelf {
+        Shelf::Disk => files::sibling(bench, written),
+        Shelf::Kept(_) => PathBuf::from(files::name_beside(written)),
+    };
+    let text = source((shelf, Role::Part), (&path, Some(place)), (&mut read, &mut findings));
+    for file in read {
+        let file = Kept { name: files::name_beside(written), ..file };
+        match inputs.iter().find(|known| known.name == file.name) {
+            None => inputs.push(file),
+            Some(known) if known.bytes == file.bytes => {}
+            Some(_) => findings.push(same_name(&file.name, place)),
+        }
+    }
+    text.filter(|_| !findings.has_faults()).ok_or_else(|| findings.into_faults())
+}
+
+fn same_name(name: &str, place: &Place) -> Diagnostic {
+    let message = format!("another file goes onto the sheet as {name}, with other contents");
+    Diagnostic::fault("same-file-name", message).at(place).hint("rename one of the two files")
 }
 
 fn readings(

@@ -10,6 +10,7 @@ use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Faults;
 use crate::diagnostic::Findings;
 use crate::diagnostic::Noted;
+use crate::diagnostic::Place;
 use crate::diagnostic::Source;
 use crate::files;
 use crate::measured;
@@ -58,6 +59,13 @@ pub fn open_all(paths: &[PathBuf], findings: &mut Findings) -> Vec<Opened> {
 /// The device and cooldown files beside a file that can be read.
 pub fn open_neighbours(of: &Path) -> Vec<Opened> {
     files::neighbours(of).iter().filter_map(|path| open(path).ok()).collect()
+}
+
+/// The text of a file that another one names at a place.
+pub fn open_named(beside: &Path, (name, place): (&str, &Place)) -> Result<Arc<Source>, Faults> {
+    let path = files::sibling(beside, name);
+    let bytes = files::read(&path).map_err(|fault| Faults(vec![fault.at(place)]))?;
+    syntax::from_bytes(&path.display().to_string(), &bytes)
 }
 
 fn open(path: &Path) -> Result<Opened, Faults> {

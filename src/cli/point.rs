@@ -106,12 +106,14 @@ fn isolated(loaded: &Loaded, Solution { solved, setup, forms }: &Solution) -> Ve
     regions.map(|(at, region)| IsolatedRegion { name: region.name.clone(), best: best(at) }).collect()
 }
 
-/// The same readings with another mixing along the rim.
+/// The same readings with another mixing along the rim. The devices of a bench change together; where they differ there is
+/// no other way, and the readings are those in use.
 fn with_rim(loaded: &Loaded, solved: &SolvedPoint, rim: Mixing) -> Vec<Expected> {
-    if solved.point.edge.rim == rim {
+    let mut point = solved.point.clone();
+    if point.edge.rim == rim || point.parts.iter().any(|part| part.edge.rim != point.edge.rim) {
         return solved.prediction.expected.clone();
     }
-    let mut point = solved.point.clone();
+    point.parts.iter_mut().for_each(|part| part.edge.rim = rim.clone());
     point.edge.rim = rim;
     let readings: Vec<Reading> = solved.prediction.expected.iter().map(|expected| expected.reading.clone()).collect();
     crate::resistance::predict(&loaded.network, &setup(loaded, &point, solved.polarity), &readings).expected

@@ -3,6 +3,7 @@
 //! Owns: [`Conductance`]. Takes `Channels`, gives matrix and shares, exact where the channels are. Must never contain
 //! coordinates, SI units or data.
 
+pub use crate::network::Link;
 use crate::number::Matrix;
 use crate::number::Number;
 use crate::number::Rational;
@@ -29,6 +30,8 @@ pub struct Solved<S> {
     /// For every bundle its potential as a combination of contact potentials: (contact, share), no zero shares,
     /// shares sum to 1. None for a loop that no contact feeds.
     pub shares: Vec<Option<Vec<(usize, S)>>>,
+    /// Wires between contacts of a bench; the matrix is that of the devices without them.
+    pub links: Vec<Link<S>>,
 }
 
 impl Conductance {
@@ -45,6 +48,16 @@ impl Conductance {
         match self {
             Self::Exact(solved) => solved.matrix[(row, column)].clone().into(),
             Self::Float(solved) => solved.matrix[(row, column)].into(),
+        }
+    }
+
+    /// The wires of a bench, with their resistance in h/e².
+    pub fn links(&self) -> Vec<Link<f64>> {
+        match self {
+            Self::Exact(solved) => {
+                solved.links.iter().map(|link| Link { ends: link.ends, resistance: link.resistance.to_f64() }).collect()
+            }
+            Self::Float(solved) => solved.links.clone(),
         }
     }
 

@@ -31,7 +31,7 @@ pub fn conductance(channels: &Channels) -> Conductance {
 
 fn solved<S: Scalar>(wired: &Wired<S>) -> Solved<S> {
     let shares = shares(wired);
-    Solved { matrix: matrix(wired, &shares), shares }
+    Solved { matrix: matrix(wired, &shares), shares, links: wired.links.clone() }
 }
 
 /// Every entry of the diagonal is what the other contacts take, so that rows sum to zero in floats too.

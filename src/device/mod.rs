@@ -8,16 +8,23 @@ use crate::diagnostic::Place;
 use crate::number::Rational;
 use crate::quantity::Nanometres;
 
+mod bench;
 mod ladder;
 mod names;
 mod parse;
 
+pub use bench::Bench;
+pub use bench::Link;
+pub use bench::Part;
+pub use bench::joined_name;
 pub use ladder::Ladder;
 pub use ladder::LadderPlace;
 pub use names::Names;
+pub use parse::Others;
 pub use parse::drawing;
 pub use parse::from_bytes;
 pub use parse::from_source;
+pub use parse::with_others;
 
 /// Index of a contact, in the order of the device file.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -56,6 +63,24 @@ pub struct Device {
     pub points: Vec<OperatingPoint>,
     /// Readings that the file names; empty means that a standard set is chosen.
     pub readings: Vec<NamedReading>,
+    /// The devices that this one is made of, where it is a bench. `mesa`, `ladder`, `layer` and `edge` above are then those
+    /// of the first and mean nothing for the others.
+    pub bench: Option<Bench>,
+}
+
+impl Device {
+    /// Every device by itself with its part of a point: this one, or those on the bench with what the bench calls them.
+    pub fn singles<'a>(&'a self, point: &'a OperatingPoint) -> Vec<(Option<&'a str>, &'a Device, &'a OperatingPoint)> {
+        match &self.bench {
+            None => vec![(None, self, point)],
+            Some(bench) => bench
+                .parts
+                .iter()
+                .zip(&point.parts)
+                .map(|(part, point)| (Some(part.name.as_str()), &part.device, point))
+                .collect(),
+        }
+    }
 }
 
 /// `[layer]`: what is known of the ungated layer.
@@ -327,6 +352,8 @@ pub struct OperatingPoint {
     pub edge: EdgeRules,
     /// Counter-running edge modes in place of fillings.
     pub modes: Option<Modes>,
+    /// On a bench the point of every device, and `bulk`, `fillings` and `edge` above mean nothing; else empty.
+    pub parts: Vec<OperatingPoint>,
     /// Where the table stands.
     pub place: Place,
 }

@@ -32,6 +32,12 @@ impl Names {
         names
     }
 
+    /// The names of contacts.
+    pub(super) fn of_list<'a>(names: impl IntoIterator<Item = &'a str>) -> Self {
+        let list = names.into_iter().map(|name| Some(name.to_owned())).collect();
+        Self { what: "contact", list, pins: Vec::new() }
+    }
+
     /// The names of a device's contacts.
     pub fn of_contacts(device: &Device) -> Self {
         let pins = device.contacts.iter().enumerate().filter_map(|(at, contact)| Some((contact.pin.clone()?, at)));

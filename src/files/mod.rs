@@ -7,6 +7,7 @@ mod group;
 mod read;
 mod write;
 
+pub use read::name_beside;
 pub use read::neighbours;
 pub use read::read;
 pub use read::read_up_to;

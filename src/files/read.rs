@@ -3,6 +3,7 @@
 use std::fs;
 use std::fs::File;
 use std::io::Read;
+use std::path::Component;
 use std::path::Path;
 use std::path::PathBuf;
 
@@ -68,6 +69,16 @@ pub fn same(one: &Path, other: &Path) -> bool {
         (Ok(one), Ok(other)) => one == other,
         _ => one == other,
     }
+}
+
+/// The name under which a file that another one names as `a/b.toml` is kept beside it: `a-b.toml`, whatever folder it came
+/// from.
+pub fn name_beside(written: &str) -> String {
+    let parts = Path::new(written).components().filter_map(|part| match part {
+        Component::Normal(name) => Some(name.to_string_lossy().into_owned()),
+        _ => None,
+    });
+    parts.collect::<Vec<_>>().join("-")
 }
 
 /// The operating system's reason, without its number.

@@ -38,13 +38,24 @@ fn collect(spec: &'static TableSpec, found: &mut Map<String, Value>) {
 /// A table is closed: a key that it does not name is a slip.
 fn table(spec: &TableSpec) -> Map<String, Value> {
     let keys = spec.keys.iter().map(|one| (one.name.to_owned(), key(one))).collect();
-    let required: Vec<&str> = spec.keys.iter().filter(|key| key.required).map(|key| key.name).collect();
+    let names = |keep: fn(&&Key) -> bool| spec.keys.iter().filter(keep).map(|key| key.name).collect::<Vec<_>>();
+    let required = names(|key| key.required && !key.alone);
+    let (alone, needed) = (names(|key| key.alone), names(|key| key.required && key.alone));
     let mut object = Map::new();
     object.insert("type".into(), json!("object"));
     object.insert("properties".into(), Value::Object(keys));
     object.insert("required".into(), json!(required));
     object.insert("additionalProperties".into(), json!(false));
+    if !alone.is_empty() {
+        object.insert("anyOf".into(), json!([{ "required": needed }, on_a_bench(&alone)]));
+    }
     object
+}
+
+/// A bench has none of the keys that describe one device.
+fn on_a_bench(alone: &[&str]) -> Value {
+    let none: Map<String, Value> = alone.iter().map(|name| ((*name).to_owned(), json!(false))).collect();
+    json!({ "required": ["bench"], "properties": none })
 }
 
 fn key(key: &Key) -> Value {
@@ -91,6 +102,7 @@ fn kind(kind: &Kind) -> Value {
         Kind::Outline => list(corner(), 3),
         Kind::Outlines => list(list(corner(), 3), 1),
         Kind::Groups => list(list(filling(), 1), 1),
+        Kind::Names => list(name(), 1),
         Kind::Texts => list(json!({ "type": "string" }), 1),
         Kind::Open(inner) => json!({ "type": "object", "additionalProperties": self::kind(inner) }),
         Kind::One(table) => reference(table),

@@ -34,6 +34,7 @@ pub fn takes(kind: &Kind, unit: Option<&Unit>) -> String {
         Kind::Outline => format!("at least three corners [x, y]{unit}"),
         Kind::Outlines => format!("a list of outlines{unit}"),
         Kind::Groups => "a list of lists of fillings".to_owned(),
+        Kind::Names => "a list of names".to_owned(),
         Kind::Texts => "a list of texts".to_owned(),
         Kind::Open(inner) => format!("a table of names, each with {}{unit}", takes(inner, None)),
         Kind::One(table) => format!("a table [{}]", table.name),
@@ -57,6 +58,7 @@ fn limits(range: Range) -> &'static str {
 /// Whether a key is needed, what holds without it, and what the program does not do with it yet.
 pub fn remark(key: &Key) -> Option<String> {
     let presence = match (key.required, key.default) {
+        (true, _) if key.alone => Some("Needed, except on a bench".to_owned()),
         (true, _) => Some("Needed".to_owned()),
         (false, "") => None,
         (false, default) => Some(format!("Without it: {default}")),

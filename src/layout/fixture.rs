@@ -39,6 +39,7 @@ pub(crate) fn bar(length_um: i64, width_um: i64) -> Device {
         overlays: Vec::new(),
         points: Vec::new(),
         readings: Vec::new(),
+        bench: None,
     }
 }
 
@@ -126,6 +127,7 @@ impl Device {
             gates_v: Vec::new(),
             edge: self.edge.clone(),
             modes: None,
+            parts: Vec::new(),
             place: place(300 + self.points.len()),
         });
         self

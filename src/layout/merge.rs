@@ -29,7 +29,7 @@ pub(super) fn layout(merged: &Subdivision, grid: Grid) -> Layout {
         vertices: branching.iter().map(|vertex| grid.point(half_edges.vertices[*vertex])).collect(),
         doubled_areas: half_edges.doubled_areas.iter().map(|area| area * scale).collect(),
     };
-    Layout { topology, positions }
+    Layout { topology, positions, parts: Vec::new() }
 }
 
 /// Half-edges in a row, from branching to branching; what is left then runs in closed curves.

@@ -22,6 +22,7 @@ mod ends;
 mod from_device;
 mod grid;
 mod half_edges;
+mod joined;
 mod label;
 mod merge;
 mod mesa;
@@ -55,6 +56,10 @@ use owner::Owner;
 
 /// The subdivision of a device, or every fault of its drawing.
 pub fn layout(device: &Device) -> Outcome<Layout> {
+    device.bench.as_ref().map_or_else(|| of_one(device), joined::layout)
+}
+
+fn of_one(device: &Device) -> Outcome<Layout> {
     let mut findings = Findings::default();
     let Some(outlines) = from_device::outlines(device, &mut findings) else { return Err(findings.into_faults()) };
     let edges = edges::edges(&snap::snap(&outlines.segments()));
@@ -153,6 +158,20 @@ pub struct Layout {
     pub topology: Topology,
     /// Coordinates only.
     pub positions: Positions,
+    /// On a bench the layout of every device by itself, else empty. Above, their faces follow one another (the unbounded
+    /// one in common), and so do pieces and vertices; contacts and overlays are counted over the whole bench.
+    pub parts: Vec<Layout>,
+}
+
+impl Layout {
+    /// Which device of a bench a piece belongs to; 0 for a device by itself.
+    pub fn part_of(&self, piece: PieceIdx) -> usize {
+        let ends = self.parts.iter().scan(0, |end, part| {
+            *end += part.topology.pieces.len();
+            Some(*end)
+        });
+        ends.take_while(|end| *end <= piece.0).count()
+    }
 }
 
 impl Topology {

@@ -8,6 +8,7 @@ use crate::device::Mixing;
 use crate::device::Modes;
 use crate::device::OperatingPoint;
 use crate::device::OverlayIdx;
+use crate::device::Part;
 use crate::layout::FaceLabel;
 use crate::layout::Layout;
 use crate::layout::Piece;
@@ -17,11 +18,17 @@ use crate::network::Arithmetic;
 use crate::network::BandIdx;
 use crate::network::Channels;
 use crate::network::Coupling;
+use crate::network::Link;
 use crate::network::Network;
 use crate::network::Operating;
 use crate::network::bands::bands;
 use crate::network::bundles::assemble;
+use crate::network::bundles::junctions;
 use crate::network::courses::append_paths;
+use crate::network::joined::Assembled;
+use crate::network::joined::assembled;
+use crate::network::joined::joined;
+use crate::number::Number;
 use crate::number::Rational;
 use crate::quantity::Polarity;
 
@@ -29,11 +36,23 @@ use crate::quantity::Polarity;
 pub fn network(layout: &Layout, contacts: usize) -> Network {
     let lengths_um =
         (0..layout.topology.pieces.len()).map(|piece| layout.positions.length_um(PieceIdx(piece))).collect();
-    Network { topology: layout.topology.clone(), lengths_um, contacts }
+    Network { topology: layout.topology.clone(), lengths_um, contacts, parts: Vec::new(), links: Vec::new() }
+}
+
+/// The same for a device, or for a bench whose devices are joined by these wires.
+pub fn of_device(layout: &Layout, device: &Device, links: Vec<Link<Number>>) -> Network {
+    let whole = Network { links, ..network(layout, device.contacts.len()) };
+    let Some(bench) = &device.bench else { return whole };
+    let parts = layout.parts.iter().zip(&bench.parts);
+    let part = |(layout, part): (&Layout, &Part)| network(layout, part.device.contacts.len());
+    Network { parts: parts.map(part).collect(), ..whole }
 }
 
 /// The setting of one operating point at one polarity. Every overlap must have an entry (the layout has checked it).
 pub fn operating(network: &Network, device: &Device, point: &OperatingPoint, polarity: Polarity) -> Operating {
+    if let Some(bench) = &device.bench {
+        return joined(network, bench, point, polarity);
+    }
     let faces = &network.topology.faces;
     let fillings: Vec<Rational> = faces.iter().map(|label| filling(label, point)).collect();
     let groups = device.groups.as_ref().filter(|_| point.modes.is_none());
@@ -56,11 +75,22 @@ pub fn operating(network: &Network, device: &Device, point: &OperatingPoint, pol
         fillings,
         polarity,
         arithmetic: Arithmetic::Exact,
+        parts: Vec::new(),
     }
 }
 
 /// All channels of a setting.
 pub fn channels(network: &Network, operating: &Operating) -> Channels {
+    let mut whole = match network.parts.as_slice() {
+        [] => of_one(network, operating),
+        _ => assembled(network, operating, of_one),
+    };
+    whole.wires.links = network.links.clone();
+    let Assembled { bands, courses, wires } = whole;
+    Channels { bands, courses, junctions: junctions(wires, operating.arithmetic) }
+}
+
+fn of_one(network: &Network, operating: &Operating) -> Assembled {
     let bands = bands(operating);
     let mut paths = Vec::new();
     for (at, band) in bands.iter().enumerate() {

@@ -7,23 +7,24 @@ use crate::network::Arithmetic;
 use crate::network::Band;
 use crate::network::Bundle;
 use crate::network::BundleIdx;
-use crate::network::Channels;
 use crate::network::Course;
 use crate::network::CourseStep;
 use crate::network::Feed;
 use crate::network::Junctions;
+use crate::network::Link;
 use crate::network::Network;
 use crate::network::Operating;
 use crate::network::Terminal;
 use crate::network::Wired;
 use crate::network::courses::Path;
+use crate::network::joined::Assembled;
 use crate::network::mixing::Blends;
 use crate::network::mixing::key;
 use crate::number::Number;
 use crate::number::Rational;
 
 /// Puts every step of every path into its bundle and joins the bundles by what flows between them.
-pub(super) fn assemble(bands: Vec<Band>, paths: Vec<Path>, (network, operating): (&Network, &Operating)) -> Channels {
+pub(super) fn assemble(bands: Vec<Band>, paths: Vec<Path>, (network, operating): (&Network, &Operating)) -> Assembled {
     let mut index = BTreeMap::new();
     let mut courses = Vec::with_capacity(paths.len());
     for path in &paths {
@@ -40,18 +41,20 @@ pub(super) fn assemble(bands: Vec<Band>, paths: Vec<Path>, (network, operating):
     let mut wires = Wired {
         bundles: (0..index.len()).map(|_| none()).collect(),
         terminals: vec![Terminal::default(); operating.transmission.len()],
+        links: Vec::new(),
     };
     for (course, path) in paths.iter().enumerate() {
         feed_course(&mut wires, (&courses, &bands), (course, path.previous), operating);
     }
     wires.bundles.extend(blends.bundles);
-    Channels { bands, courses, junctions: junctions(wires, operating.arithmetic) }
+    Assembled { bands, courses, wires }
 }
 
-/// In fractions, where all feeds are some and nothing else is asked for.
-fn junctions(wires: Wired<Number>, arithmetic: Arithmetic) -> Junctions {
-    let mut feeds = wires.bundles.iter().flat_map(|bundle| &bundle.feeds);
-    if arithmetic == Arithmetic::Float || feeds.any(|(_, weight)| weight.exact().is_none()) {
+/// In fractions, where all feeds and wires are some and nothing else is asked for.
+pub(super) fn junctions(wires: Wired<Number>, arithmetic: Arithmetic) -> Junctions {
+    let feeds = wires.bundles.iter().flat_map(|bundle| &bundle.feeds).map(|(_, weight)| weight);
+    let mut all = feeds.chain(wires.links.iter().map(|link| &link.resistance));
+    if arithmetic == Arithmetic::Float || all.any(|number| number.exact().is_none()) {
         return Junctions::Float(converted(wires, |weight| weight.to_f64()));
     }
     Junctions::Exact(converted(wires, |weight| weight.exact().cloned().unwrap_or_default()))
@@ -62,7 +65,9 @@ fn converted<S>(wires: Wired<Number>, number: impl Fn(&Number) -> S) -> Wired<S>
         let feeds = feeds.iter().map(|(feed, weight)| (*feed, number(weight))).collect();
         Bundle { weight, feeds }
     };
-    Wired { bundles: wires.bundles.into_iter().map(bundle).collect(), terminals: wires.terminals }
+    let link = |Link { ends, resistance }: &Link<Number>| Link { ends: *ends, resistance: number(resistance) };
+    let links = wires.links.iter().map(link).collect();
+    Wired { links, bundles: wires.bundles.into_iter().map(bundle).collect(), terminals: wires.terminals }
 }
 
 fn feed_course(

@@ -12,6 +12,7 @@ pub use crate::layout::FaceLabel;
 use crate::layout::PieceIdx;
 use crate::layout::Topology;
 use crate::layout::VertexIdx;
+use crate::number::Number;
 use crate::number::Rational;
 use crate::quantity::Nanometres;
 use crate::quantity::Polarity;
@@ -21,11 +22,13 @@ mod boundary;
 mod build;
 mod bundles;
 mod courses;
+mod joined;
 mod mixing;
 mod rim;
 
 pub use build::channels;
 pub use build::network;
+pub use build::of_device;
 pub use build::operating;
 pub use rim::rim_order;
 
@@ -38,6 +41,19 @@ pub struct Network {
     pub lengths_um: Vec<f64>,
     /// Number of contacts.
     pub contacts: usize,
+    /// On a bench the network of every device by itself, else empty.
+    pub parts: Vec<Network>,
+    /// Wires between contacts of a bench.
+    pub links: Vec<Link<Number>>,
+}
+
+/// A wire between two contacts.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Link<S> {
+    /// What it joins.
+    pub ends: [ContactIdx; 2],
+    /// Its resistance in h/e²; at 0 both have one potential.
+    pub resistance: S,
 }
 
 /// One setting of the fillings, at one polarity.
@@ -62,6 +78,19 @@ pub struct Operating {
     pub polarity: Polarity,
     /// In which numbers to solve.
     pub arithmetic: Arithmetic,
+    /// On a bench the ladder, groups and backward modes of every device, and those above mean nothing; else empty.
+    pub parts: Vec<Ladders>,
+}
+
+/// Which levels of one device belong together.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Ladders {
+    /// Which filling each ladder step ends at.
+    pub ladder: Ladder,
+    /// As in [`Operating`].
+    pub groups: Vec<Vec<usize>>,
+    /// As in [`Operating`], for the faces of the device.
+    pub backward: Vec<Rational>,
 }
 
 impl Operating {
@@ -230,6 +259,14 @@ pub struct Wired<S> {
     pub bundles: Vec<Bundle<S>>,
     /// One per contact.
     pub terminals: Vec<Terminal>,
+    /// Wires between contacts of a bench.
+    pub links: Vec<Link<S>>,
+}
+
+impl<S> Default for Wired<S> {
+    fn default() -> Self {
+        Self { bundles: Vec::new(), terminals: Vec::new(), links: Vec::new() }
+    }
 }
 
 /// What flows where: in fractions, unless something enters that is none.

@@ -93,6 +93,7 @@ struct PenFields<'a> {
     along: bool,
     /// Gates are drawn beside edge modes.
     idle_gates: bool,
+    wires: Option<String>,
 }
 
 impl<'a> PenFields<'a> {
@@ -101,7 +102,7 @@ impl<'a> PenFields<'a> {
         let path = point.toward.bundle_potentials(point.drawn_current).is_some();
         let along = point.toward.channels.courses.iter().flat_map(|course| &course.steps).any(|step| step.is_changed());
         let idle_gates = point.point.modes.is_some() && !device.overlays.is_empty();
-        Self { inlet, outlet, path, parallel: stands_for_many(point), along, idle_gates }
+        Self { inlet, outlet, path, parallel: stands_for_many(point), along, idle_gates, wires: names::wires(device) }
     }
 }
 
@@ -199,6 +200,9 @@ fn drawn(scene: &Scene) -> Vec<String> {
 
 /// Whether any region of the point has carriers of one sign.
 fn carries(point: &OperatingPoint, is_negative: fn(&Rational) -> bool, wanted: bool) -> bool {
+    if !point.parts.is_empty() {
+        return point.parts.iter().any(|part| carries(part, is_negative, wanted));
+    }
     let fillings = std::iter::once(&point.bulk).chain(point.fillings.iter().map(|(_, filling)| filling));
     fillings.filter(|filling| !filling.is_zero()).any(|filling| is_negative(filling) == wanted)
 }

@@ -8,6 +8,7 @@ use crate::device::Device;
 use crate::device::EdgeRules;
 use crate::device::Mixing;
 use crate::device::Overlay;
+use crate::device::joined_name;
 use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Place;
 use crate::quantity::Constant;
@@ -164,10 +165,12 @@ fn own(device: &Device) -> Vec<String> {
 /// One entry per distinct rule, with the points that use it; no names where all use one.
 fn mixing(sources: &Sources) -> Vec<MixingFields> {
     let mut rules: Vec<(&EdgeRules, Vec<String>)> = Vec::new();
-    for point in sources.device.points.iter().filter(|point| point.modes.is_none()) {
+    let points = sources.device.points.iter().flat_map(|point| sources.device.singles(point));
+    for (part, _, point) in points.filter(|(_, _, point)| point.modes.is_none()) {
+        let name = part.map_or_else(|| point.name.clone(), |part| joined_name(part, &point.name));
         match rules.iter_mut().find(|(rule, _)| **rule == point.edge) {
-            Some((_, points)) => points.push(point.name.clone()),
-            None => rules.push((&point.edge, vec![point.name.clone()])),
+            Some((_, points)) => points.push(name),
+            None => rules.push((&point.edge, vec![name])),
         }
     }
     let alone = rules.len() == 1;

@@ -44,6 +44,16 @@ pub struct ExpectedOutput<'a> {
     device: &'a str,
     klitzing_ohm: f64,
     points: Vec<PointOutput<'a>>,
+    /// The wires of a bench, which the conductance matrices are without.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    links: Vec<LinkOutput<'a>>,
+}
+
+#[derive(Debug, Serialize)]
+struct LinkOutput<'a> {
+    from: &'a str,
+    to: &'a str,
+    ohm: f64,
 }
 
 #[derive(Debug, Serialize)]
@@ -74,7 +84,10 @@ struct ReadingOutput<'a> {
 /// The machine output for a device and its solved points.
 pub fn expected_output<'a>(device: &'a Device, solved: &'a [SolvedPoint<'a>]) -> ExpectedOutput<'a> {
     let points = solved.iter().map(|point| point_output(device, point)).collect();
-    ExpectedOutput { format: 1, device: &device.id, klitzing_ohm: KLITZING.value, points }
+    let name = |end: crate::device::ContactIdx| device.contacts[end.0].name.as_str();
+    let links = device.bench.iter().flat_map(|bench| &bench.links);
+    let links = links.map(|link| LinkOutput { from: name(link.ends[0]), to: name(link.ends[1]), ohm: link.ohm });
+    ExpectedOutput { format: 1, device: &device.id, klitzing_ohm: KLITZING.value, points, links: links.collect() }
 }
 
 fn point_output<'a>(device: &'a Device, solved: &'a SolvedPoint<'a>) -> PointOutput<'a> {

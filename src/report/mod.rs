@@ -87,6 +87,7 @@ pub use understood::understood_readings;
 pub use understood::understood_table;
 pub use why::WhySource;
 pub use why::names as why_names;
+pub use why::needs_no_wires as why_needs_no_wires;
 pub use why::sentences as why_sentences;
 pub use why::text as why_text;
 pub use words::Words;

@@ -90,8 +90,24 @@ fn modes(modes: &Modes) -> String {
     format!("edge {plural}: {forward} forward, {backward} backward{}", over.unwrap_or_default())
 }
 
-/// `filling 3 with 1 under TG`; overlaps as `TG+BG`; `edge modes: 1 forward, 1 backward`.
+/// `filling 3 with 1 under TG`; overlaps as `TG+BG`; `edge modes: 1 forward, 1 backward`. On a bench `A: filling 3; B, C: filling 2`.
 pub fn fillings(device: &Device, point: &OperatingPoint) -> String {
+    let mut alike: Vec<(Vec<&str>, String)> = Vec::new();
+    for (name, device, point) in device.singles(point) {
+        let words = fillings_of_one(device, point);
+        match alike.iter_mut().find(|(_, known)| *known == words) {
+            Some((names, _)) => names.extend(name),
+            None => alike.push((name.into_iter().collect(), words)),
+        }
+    }
+    let parts = alike.into_iter().map(|(names, words)| match names.as_slice() {
+        [] => words,
+        names => format!("{}: {words}", names.join(", ")),
+    });
+    parts.collect::<Vec<_>>().join("; ")
+}
+
+fn fillings_of_one(device: &Device, point: &OperatingPoint) -> String {
     if let Some(of_point) = &point.modes {
         return modes(of_point);
     }
@@ -103,6 +119,24 @@ pub fn fillings(device: &Device, point: &OperatingPoint) -> String {
     let bulk = format!("filling {}", filling(&point.bulk));
     let under: Vec<String> = under.collect();
     if under.is_empty() { bulk } else { format!("{bulk} with {}", under.join(", ")) }
+}
+
+/// The wires of a bench, `A:5–B:1, A:6–B:2 each 1.2 Ω; A:7–B:3 0 Ω`; none where there are none.
+pub fn wires(device: &Device) -> Option<String> {
+    let mut alike: Vec<(f64, Vec<String>)> = Vec::new();
+    for link in device.bench.iter().flat_map(|bench| &bench.links) {
+        let words = link.ends.map(|end| contact_name(device, end)).join("–");
+        match alike.iter_mut().find(|(ohm, _)| *ohm == link.ohm) {
+            Some((_, wires)) => wires.push(words),
+            None => alike.push((link.ohm, vec![words])),
+        }
+    }
+    let parts = alike.into_iter().map(|(ohm, wires)| {
+        let each = if wires.len() > 1 { "each " } else { "" };
+        format!("{} {each}{} Ω", wires.join(", "), as_given(ohm))
+    });
+    let words = parts.collect::<Vec<_>>().join("; ");
+    (!words.is_empty()).then_some(words)
 }
 
 /// The field of a point, `4.14 T`; none where the file gives none.

@@ -13,8 +13,9 @@ use crate::resistance::Reading;
 
 /// A line for the device, one for the cooling, one for every note, in the order of the files.
 pub fn stated(sources: &Sources) -> Vec<String> {
-    let device: Vec<String> = layer(sources.device).into_iter().chain(gates(sources.device)).collect();
+    let device: Vec<String> = layers(sources.device).into_iter().chain(gates(sources.device)).collect();
     let mut lines = one_line(&device);
+    lines.extend(names::wires(sources.device).map(|wires| format!("wires: {wires}")));
     if let Some(cooldown) = sources.cooldown {
         let texts = cooldown.texts.iter().map(|(key, text)| format!("{key}: {text}"));
         let cooling: Vec<String> = texts.chain(remanence(cooldown)).chain(boxes(sources.device, cooldown)).collect();
@@ -30,11 +31,21 @@ fn one_line(parts: &[String]) -> Vec<String> {
     if parts.is_empty() { Vec::new() } else { vec![parts.join("; ")] }
 }
 
-fn layer(device: &Device) -> Vec<String> {
+/// `layer: density …`; on a bench one for every device, `layer of A: …`.
+fn layers(device: &Device) -> Vec<String> {
+    match &device.bench {
+        None => layer(device, "layer"),
+        Some(bench) => {
+            bench.parts.iter().flat_map(|part| layer(&part.device, &format!("layer of {}", part.name))).collect()
+        }
+    }
+}
+
+fn layer(device: &Device, words: &str) -> Vec<String> {
     let density = device.layer.density_per_m2.map(|value| format!("density {} m⁻²", as_given(value)));
     let mobility = device.layer.mobility_m2_per_vs.map(|value| format!("mobility {} m²/(V s)", as_given(value)));
     let parts: Vec<String> = density.into_iter().chain(mobility).collect();
-    if parts.is_empty() { parts } else { vec![format!("layer: {}", parts.join(", "))] }
+    if parts.is_empty() { parts } else { vec![format!("{words}: {}", parts.join(", "))] }
 }
 
 fn gates(device: &Device) -> Vec<String> {

@@ -35,6 +35,7 @@ pub fn expected_table(device: &Device, cooldown: Option<&Cooldown>, solved: &[So
             text.push_str(&point_table(device, cooldown, toward, away));
         }
     }
+    text.extend(names::wires(device).map(|wires| wrapped(&format!("Wires: {wires}."), WIDTH).join("\n") + "\n"));
     text.push_str(&closing(device, cooldown));
     let formless = solved.iter().filter(|solved| solved.prediction.expected.iter().any(is_formless));
     let reasons: BTreeSet<&str> = formless.map(reason).collect();
@@ -50,6 +51,9 @@ const FORMLESS: &str = "\u{2013}: no closed form; within this ordering of the fi
 fn reason(solved: &SolvedPoint) -> &'static str {
     match (solved.point.modes, &solved.prediction.conductance) {
         (Some(_), Conductance::Exact(_)) => "\u{2013}: no closed form; edge modes have no fillings.\n",
+        (_, conductance) if conductance.links().iter().any(|link| link.resistance > 0.0) => {
+            "\u{2013}: no closed form; the resistance of wires is in the reading.\n"
+        }
         (_, Conductance::Float(_)) => "\u{2013}: no closed form; the reading depends on path lengths.\n",
         _ => FORMLESS,
     }

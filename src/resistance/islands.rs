@@ -1,14 +1,15 @@
-//! Islands: contacts that the device joins, each island solved once.
+//! Islands: contacts that the device and its wires join, each island solved once.
 
 use crate::conductance::Solved;
 use crate::device::ContactIdx;
 use crate::number::Balance;
 use crate::number::Matrix;
 use crate::number::Scalar;
+use crate::resistance::nodes::Nodes;
 
-/// The device cut into islands. Contacts with a conductance between them form one.
+/// The device cut into islands. Contacts with a conductance or a wire between them form one.
 pub(super) struct Islands<S> {
-    /// For every contact its island and its place in it.
+    /// For every contact its island and its place in it; contacts of one node share it.
     place: Vec<(usize, usize)>,
     /// Per island: potential (row) per unit current in at a contact (column) and out at the last; the last has 0.
     potential: Vec<Vec<Vec<S>>>,
@@ -18,16 +19,19 @@ pub(super) struct Islands<S> {
 impl<S: Scalar> Islands<S> {
     /// Cuts and solves.
     pub fn of(solved: &Solved<S>) -> Self {
-        let members = members(&solved.matrix);
-        let mut place = vec![(0, 0); solved.contacts()];
-        for (island, contacts) in members.iter().enumerate() {
-            for (at, &contact) in contacts.iter().enumerate() {
-                place[contact] = (island, at);
+        let Nodes { of_contact, matrix, passes } = Nodes::of(solved);
+        let members = members(&matrix);
+        let mut place = vec![(0, 0); matrix.rows()];
+        for (island, nodes) in members.iter().enumerate() {
+            for (at, &node) in nodes.iter().enumerate() {
+                place[node] = (island, at);
             }
         }
-        let passes = (0..solved.contacts()).map(|at| !solved.matrix[(at, at)].is_zero()).collect();
-        let potential = members.iter().map(|contacts| unit_potentials(&solved.matrix, contacts)).collect();
-        Self { place, potential, passes }
+        Self {
+            place: of_contact.iter().map(|&node| place[node]).collect(),
+            passes: of_contact.iter().map(|&node| passes[node]).collect(),
+            potential: members.iter().map(|nodes| unit_potentials(&matrix, nodes)).collect(),
+        }
     }
 
     /// Number of contacts of the device.
@@ -110,7 +114,7 @@ mod tests {
             }
         }
         let matrix = if transposed { matrix.transposed() } else { matrix };
-        Islands::of(&Solved { matrix, shares: Vec::new() })
+        Islands::of(&Solved { matrix, shares: Vec::new(), links: Vec::new() })
     }
 
     fn seventeenths(islands: &Islands<Rational>, [i, j, k, l]: [usize; 4]) -> String {

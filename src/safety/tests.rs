@@ -38,6 +38,7 @@ fn plain_device() -> Device {
         overlays: Vec::new(),
         points: Vec::new(),
         readings: Vec::new(),
+        bench: None,
     }
 }
 

@@ -156,7 +156,9 @@ impl Walk<'_> {
         if !self.context.spoiled.is_empty() {
             return;
         }
-        for key in here.table.keys.iter().filter(|key| key.required && table.lacks(key.name)) {
+        let bench = !table.lacks("bench");
+        let needed = |key: &&Key| key.required && !(key.alone && bench);
+        for key in here.table.keys.iter().filter(needed).filter(|key| table.lacks(key.name)) {
             let what =
                 if key.table().is_some() { lookup::header(key, here.table.name) } else { format!("`{}`", key.name) };
             let message = match here.table.name {

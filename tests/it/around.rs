@@ -28,7 +28,7 @@ pub fn bar(filling: i64, polarity: Polarity) -> Conductance {
         matrix[(contact, contact)] = Rational::from(filling);
         matrix[(contact, feeding(contact))] = Rational::from(-filling);
     }
-    Conductance::Exact(Solved { matrix, shares: Vec::new() })
+    Conductance::Exact(Solved { matrix, shares: Vec::new(), links: Vec::new() })
 }
 
 /// A circuit with nothing in it.

@@ -44,11 +44,17 @@ fn expectations(bytes: &[u8]) -> Vec<Expected> {
     text.lines().filter_map(|line| line.strip_prefix("#! ")).map(Expected::from_line).collect()
 }
 
-/// Findings of a file that must fail, as it is read or as it is laid out; files of cooldowns are read beside the good device.
+/// Findings of a file that must fail, as it is read or as it is laid out; files of cooldowns are read beside the good device,
+/// benches with the files they name.
 fn findings(name: &str, bytes: &[u8]) -> Vec<Diagnostic> {
     let faults = if name.starts_with("cooldown") {
         let device = edgesheet::device::from_bytes("bar.toml", DEVICE).unwrap().value;
         edgesheet::cooldown::from_bytes(name, bytes, &device).err()
+    } else if name.starts_with("bench") {
+        let beside = Path::new(env!("CARGO_MANIFEST_DIR")).join("tests/bad");
+        let read = |name: &str| edgesheet::syntax::from_bytes(name, &std::fs::read(beside.join(name)).unwrap());
+        let source = edgesheet::syntax::from_bytes(name, bytes).unwrap();
+        edgesheet::device::with_others(&source, &mut |name, _| read(name)).err()
     } else {
         device_faults(name, bytes)
     };

@@ -47,7 +47,7 @@ fn random_device(dice: &mut Dice, contacts: usize) -> Conductance {
             matrix[(to, from)] -= &weight;
         }
     }
-    Conductance::Exact(Solved { matrix, shares: Vec::new() })
+    Conductance::Exact(Solved { matrix, shares: Vec::new(), links: Vec::new() })
 }
 
 fn one_of<T: Copy>(dice: &mut Dice, values: &[T]) -> T {

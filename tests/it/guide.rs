@@ -208,7 +208,11 @@ fn compare(schema: &Value, here: &Value, table: &'static TableSpec) {
     let properties = here["properties"].as_object().unwrap();
     assert_eq!(properties.len(), table.keys.len(), "{}", table.name);
     let required: Vec<&str> = here["required"].as_array().unwrap().iter().map(|key| key.as_str().unwrap()).collect();
-    assert!(table.keys.iter().all(|key| key.required == required.contains(&key.name)), "{}", table.name);
+    let needed = |key: &Key| key.required && !key.alone;
+    assert!(table.keys.iter().all(|key| needed(key) == required.contains(&key.name)), "{}", table.name);
+    let of_one = &here["anyOf"][0]["required"];
+    let said = |key: &Key| of_one.as_array().is_some_and(|keys| keys.iter().any(|name| name == key.name));
+    assert!(table.keys.iter().all(|key| (key.required && key.alone) == said(key)), "{}", table.name);
     for key in table.keys {
         let said = properties[key.name]["description"].as_str().unwrap();
         assert!(said.to_lowercase().starts_with(&key.doc.to_lowercase()), "{}: {said}", key.name);

@@ -21,6 +21,7 @@ mod hand;
 mod help;
 mod hostile;
 mod invariants;
+mod joined;
 mod lattice;
 mod lengths;
 mod literature;

@@ -1,5 +1,6 @@
 //! The text of a device file to a checked [`Device`]: one file per table, one function per rule.
 
+mod bench;
 mod contact;
 mod density;
 mod filling;
@@ -16,8 +17,10 @@ mod transmission;
 use std::sync::Arc;
 
 use crate::diagnostic::Diagnostic;
+use crate::diagnostic::Faults;
 use crate::diagnostic::Findings;
 use crate::diagnostic::Outcome;
+use crate::diagnostic::Place;
 use crate::diagnostic::Source;
 use crate::syntax;
 use crate::syntax::Checked;
@@ -41,11 +44,23 @@ pub fn from_bytes(name: &str, bytes: &[u8]) -> Outcome<Device> {
     from_source(&syntax::from_bytes(name, bytes)?)
 }
 
-/// Reads a device file. All faults come at once, each with its place; where the syntax is broken the rules between
-/// tables are left for the next run, because they would find faults that are not there.
+/// Reads the file of one device. All faults come at once, each with its place; where the syntax is broken the rules
+/// between tables are left for the next run, because they would find faults that are not there.
 pub fn from_source(source: &Arc<Source>) -> Outcome<Device> {
+    with_others(source, &mut |_, place| Err(bench::not_here(place)))
+}
+
+/// Gives the text of a device file that is named in another one at a place.
+pub type Others<'a> = dyn FnMut(&str, &Place) -> Result<Arc<Source>, Faults> + 'a;
+
+/// Reads a device file, or a bench with the device files that it names.
+pub fn with_others(source: &Arc<Source>, others: &mut Others) -> Outcome<Device> {
     let Checked { root, mut findings, whole } = syntax::read(source, &DEVICE_FILE)?;
-    let device = if whole { device(&root, &mut findings) } else { None };
+    let device = match whole {
+        true if root.lacks("bench") => device(&root, &mut findings),
+        true => bench::read(&root, others, &mut findings),
+        false => None,
+    };
     match device {
         Some(device) => findings.finish(device),
         None => Err(findings.into_faults()),
@@ -74,6 +89,7 @@ pub fn drawing(source: &Arc<Source>) -> Option<Device> {
         points: parts.points.filter(|_| all).unwrap_or_default(),
         readings: Vec::new(),
         ladder: parts.ladder,
+        bench: None,
     })
 }
 
@@ -114,6 +130,7 @@ impl Parts {
 }
 
 fn device(root: &Table, findings: &mut Findings) -> Option<Device> {
+    findings.extend(bench::links_alone(root));
     let identity = identity::read(root);
     let parts = Parts::read(root, findings);
     let device = Device {
@@ -130,6 +147,7 @@ fn device(root: &Table, findings: &mut Findings) -> Option<Device> {
         points: parts.points?,
         readings: parts.readings?,
         ladder: parts.ladder,
+        bench: None,
     };
     density::compare(&device, findings);
     Some(device)

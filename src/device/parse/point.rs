@@ -41,6 +41,7 @@ fn point(root: &Table, table: &Table, scope: &Scope<'_>, findings: &mut Findings
         gates_v,
         edge: mixing::overridden(table, &edge),
         modes,
+        parts: Vec::new(),
         place: table.place.clone(),
     })
 }

@@ -97,6 +97,7 @@ impl Way<'_> {
         let for_lines = (count as f64 + 1.0) * pitch_mm;
         let least = match &layout.topology.faces[gap.face.0] {
             _ if matches!(names, Names::Squeezed | Names::Even) => 0.4,
+            FaceLabel::Vacuum if between_devices(layout, gap) => 6.0,
             FaceLabel::Vacuum => 1.2,
             FaceLabel::Contact(contact) => match (names, gap.along) {
                 (Names::Inside, Along::X) => labels::room_for_name(&drawing.names.contacts[contact.0].name),
@@ -118,6 +119,12 @@ impl Way<'_> {
         let count: usize = sides.map(|(piece, on_right)| self.nests.count(piece, on_right)).sum();
         (count as f64 + 1.0) * self.pitch_mm
     }
+}
+
+/// Whether a gap lies between two devices of a bench.
+fn between_devices(layout: &Layout, gap: Gap) -> bool {
+    let [one, other] = gap.sides.map(|(piece, _)| layout.part_of(piece));
+    one != other
 }
 
 struct Fit<'a> {

@@ -24,15 +24,17 @@ use crate::quantity::printed::fraction;
 use crate::report::Understood;
 use crate::report::names;
 use crate::report::printed::filling;
+use crate::report::understood::bench::understood_bench;
 
 /// A device, and where it could be laid out, its contacts rim by rim, clockwise.
 pub fn understood_device(file: &str, device: &Device, rims: Option<&[Vec<ContactIdx>]>) -> Understood {
-    let about: Vec<&str> =
-        [device.title.as_str(), device.material.as_str()].into_iter().filter(|text| !text.is_empty()).collect();
+    if let Some(bench) = &device.bench {
+        return understood_bench(file, (device, bench), rims);
+    }
     let overlays = |kind| device.overlays.iter().filter(move |overlay| overlay.kind == kind).map(overlay_row).collect();
     let kind = format!("device file of {}", device.id);
     Understood::new(file, kind)
-        .saying("about", if about.is_empty() { Vec::new() } else { vec![about.join("; ")] })
+        .saying("about", about(device))
         .saying("layer", layer(device))
         .saying("mesa", vec![mesa(&device.mesa.shape)])
         .with("contacts", device.contacts.iter().map(contact_row).collect())
@@ -45,6 +47,13 @@ pub fn understood_device(file: &str, device: &Device, rims: Option<&[Vec<Contact
         .with("points", device.points.iter().map(|point| point_row(device, point)).collect())
         .saying("assumed", unnamed_gates(device))
         .saying("readings", vec![readings(device)])
+}
+
+/// Title and material.
+pub(super) fn about(device: &Device) -> Vec<String> {
+    let about: Vec<&str> =
+        [device.title.as_str(), device.material.as_str()].into_iter().filter(|text| !text.is_empty()).collect();
+    if about.is_empty() { Vec::new() } else { vec![about.join("; ")] }
 }
 
 fn layer(device: &Device) -> Vec<String> {
@@ -141,7 +150,7 @@ fn outline(corners: &[Corner]) -> String {
     format!("outline of {} corners, x {x}, y {y}", corners.len())
 }
 
-fn rim_lines(device: &Device, rims: &[Vec<ContactIdx>]) -> Vec<String> {
+pub(super) fn rim_lines(device: &Device, rims: &[Vec<ContactIdx>]) -> Vec<String> {
     let line = |(at, rim): (usize, &Vec<ContactIdx>)| {
         let contacts: Vec<&str> = rim.iter().map(|contact| names::contact_name(device, *contact)).collect();
         // Round an opening the mesa lies on the other side: there the same order runs anticlockwise.
@@ -203,18 +212,18 @@ fn driver(device: &Device) -> Vec<String> {
     }
 }
 
-fn point_row(device: &Device, point: &OperatingPoint) -> Vec<String> {
+pub(super) fn point_row(device: &Device, point: &OperatingPoint) -> Vec<String> {
     let volts = point.gates_v.iter().map(|(gate, volts)| {
         let name = device.overlays.get(gate.0).map_or("", |overlay| overlay.name.as_str());
         format!("{name} at {} V", as_given(*volts))
     });
-    let own = (point.edge != device.edge).then(|| format!("mixing: {}", mixing(&point.edge)));
+    let own = (device.bench.is_none() && point.edge != device.edge).then(|| format!("mixing: {}", mixing(&point.edge)));
     let more = std::iter::once(names::fillings(device, point)).chain(volts).chain(own);
     vec![point.name.clone(), names::field(point).unwrap_or_default(), more.collect::<Vec<_>>().join("; ")]
 }
 
 /// A gate that a point does not name could as well have been forgotten.
-fn unnamed_gates(device: &Device) -> Vec<String> {
+pub(super) fn unnamed_gates(device: &Device) -> Vec<String> {
     let gates = || device.overlays.iter().enumerate().filter(|(_, overlay)| overlay.kind == OverlayKind::Gate);
     let named = |point: &OperatingPoint, at: usize| point.fillings.iter().any(|(cover, _)| cover == &[OverlayIdx(at)]);
     let line = |point: &OperatingPoint| {
@@ -229,7 +238,7 @@ fn unnamed_gates(device: &Device) -> Vec<String> {
     device.points.iter().filter(|point| point.modes.is_none()).filter_map(line).collect()
 }
 
-fn readings(device: &Device) -> String {
+pub(super) fn readings(device: &Device) -> String {
     match device.readings.len() {
         0 => "the standard set, as none is named".to_owned(),
         1 => "1, as named".to_owned(),

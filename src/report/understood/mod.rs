@@ -1,6 +1,7 @@
 //! What is understood of a file, in words: one part after the other, for a terminal.
 
 mod alone;
+mod bench;
 mod cooldown;
 mod device;
 mod output;

@@ -53,6 +53,15 @@ pub fn sentences(source: WhySource, expected: &Expected, why: &Why, texts: &Text
     texts.lines("reading-why.txt", &fields(source, expected, why))
 }
 
+/// Steps follow channels alone, so they are not told across wires.
+pub fn needs_no_wires(device: &Device) -> Result<(), Diagnostic> {
+    if device.bench.as_ref().is_none_or(|bench| bench.links.is_empty()) {
+        return Ok(());
+    }
+    let message = "`--why` follows channels, and on this bench wires join the devices";
+    Err(Diagnostic::fault("why-across-wires", message).hint("ask it of a device's own file, or leave `--why` out"))
+}
+
 #[derive(Serialize)]
 struct Fields {
     away: bool,

@@ -15,6 +15,7 @@ use crate::device::Device;
 use crate::device::Mixing;
 use crate::device::OperatingPoint;
 use crate::device::OverlayIdx;
+use crate::device::joined_name;
 use crate::network::Coupling;
 use crate::network::FaceIdx;
 use crate::network::FaceLabel;
@@ -39,12 +40,25 @@ pub struct FillingRegion {
     pub faces: Vec<FaceIdx>,
     /// Its filling at the point.
     pub filling: Rational,
+    /// What it is to its device.
+    pub kind: RegionKind,
+}
+
+/// What a region is to its device.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum RegionKind {
+    /// The ungated mesa.
+    Bulk,
+    /// An overlay with the filling of the ungated mesa.
+    LikeBulk,
+    /// An overlay with a filling of its own.
+    Own,
 }
 
 impl FillingRegion {
     /// Whether it is the ungated mesa.
     pub fn is_bulk(&self) -> bool {
-        self.name == BULK
+        self.kind == RegionKind::Bulk
     }
 }
 
@@ -167,9 +181,8 @@ fn exact_settings(operating: &Operating) -> Vec<Operating> {
 
 /// Regions with a filling of their own, then overlays that have the bulk's; and the number of the first.
 fn own_first(regions: Vec<FillingRegion>) -> (Vec<FillingRegion>, usize) {
-    let bulk = regions.iter().find(|region| region.is_bulk()).map(|region| region.filling.clone());
-    let own = |region: &FillingRegion| region.is_bulk() || Some(&region.filling) != bulk.as_ref();
-    let (mut own, like_bulk): (Vec<_>, Vec<_>) = regions.into_iter().partition(own);
+    let (mut own, like_bulk): (Vec<_>, Vec<_>) =
+        regions.into_iter().partition(|region| region.kind != RegionKind::LikeBulk);
     let count = own.len();
     own.extend(like_bulk);
     (own, count)
@@ -197,25 +210,47 @@ fn ties(regions: &mut Vec<FillingRegion>) -> Vec<usize> {
     tied
 }
 
+/// Named by those with a filling of their own: what is like the bulk goes by the bulk's name.
 fn join(regions: &[FillingRegion], same: &[usize]) -> FillingRegion {
-    let names: Vec<&str> = same.iter().map(|&at| regions[at].name.as_str()).collect();
-    let name = if names.contains(&BULK) { BULK.to_owned() } else { names.join(", ") };
+    let own = same.iter().map(|&at| &regions[at]).filter(|region| region.kind != RegionKind::LikeBulk);
+    let names: Vec<&str> = own.map(|region| region.name.as_str()).collect();
     let faces = same.iter().flat_map(|&at| regions[at].faces.clone()).collect();
-    FillingRegion { name, faces, filling: regions[same[0]].filling.clone() }
+    FillingRegion { name: names.join(", "), faces, ..regions[same[0]].clone() }
 }
 
 /// The regions of a point: overlays first, in the order of the device file, the bulk last. Regions of filling zero carry
-/// nothing and are left out.
+/// nothing and are left out. On a bench those of every device, called `A:TG`.
 pub fn filling_regions(network: &Network, device: &Device, point: &OperatingPoint) -> Vec<FillingRegion> {
+    let Some(bench) = &device.bench else { return regions_of_one(network, device, point) };
+    let mut before = 0;
+    let mut regions = Vec::new();
+    for ((network, part), point) in network.parts.iter().zip(&bench.parts).zip(&point.parts) {
+        for region in regions_of_one(network, &part.device, point) {
+            let faces = region.faces.iter().map(|face| FaceIdx(before + face.0)).collect();
+            regions.push(FillingRegion { name: joined_name(&part.name, &region.name), faces, ..region });
+        }
+        before += network.topology.faces.len() - 1;
+    }
+    regions.sort_by_key(FillingRegion::is_bulk);
+    regions
+}
+
+fn regions_of_one(network: &Network, device: &Device, point: &OperatingPoint) -> Vec<FillingRegion> {
     let mut regions: Vec<FillingRegion> = Vec::new();
     for (face, cover) in covers(network, point) {
         let Some(filling) = point.filling(&cover).filter(|filling| !filling.is_zero()) else { continue };
         let name = cover_name(device, &cover);
         match regions.iter_mut().find(|region| region.name == name) {
             Some(region) => region.faces.push(face),
-            None => regions.push(FillingRegion { name, faces: vec![face], filling: filling.clone() }),
+            None => {
+                let kind = if cover.is_empty() { RegionKind::Bulk } else { RegionKind::Own };
+                regions.push(FillingRegion { name, faces: vec![face], filling: filling.clone(), kind });
+            }
         }
     }
+    let bulk = regions.iter().find(|region| region.is_bulk()).map(|region| region.filling.clone());
+    let like_bulk = |region: &&mut FillingRegion| !region.is_bulk() && Some(&region.filling) == bulk.as_ref();
+    regions.iter_mut().filter(like_bulk).for_each(|region| region.kind = RegionKind::LikeBulk);
     regions
 }
 

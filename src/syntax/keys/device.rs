@@ -11,23 +11,22 @@ pub static DEVICE_FILE: FileSpec = FileSpec { what: "device file", root: &ROOT }
 
 /// Words for the ladders with a name.
 const LADDERS: &[&str] = &["spin-split", "spin-degenerate", "graphene", "bilayer-graphene"];
-const ONE_DEVICE: &str = "one device with its own file is computed, without links";
 
 static ROOT: TableSpec = TableSpec {
     name: "",
     keys: &[
         Key::new("format", Kind::Count(1), "version of this file format, 1").required(),
         Key::new("device", Kind::One(&DEVICE), "what the device is").required(),
-        Key::new("layer", Kind::One(&LAYER), "what is known of the ungated layer"),
-        Key::new("mesa", Kind::One(&MESA), "shape of the mesa").required(),
-        Key::new("edge", Kind::One(&EDGE), "mixing of channels that run side by side"),
-        Key::new("contact", Kind::Many(&CONTACT), "a contact; at least two are needed").required(),
-        Key::new("gate", Kind::Many(&GATE), "a gate, with a filling under it at every point"),
-        Key::new("step", Kind::Many(&STEP), "a part of the layer with a filling of its own and no gate"),
-        Key::new("point", Kind::Many(&POINT), "an operating point; at least one is needed").required(),
+        Key::new("layer", Kind::One(&LAYER), "what is known of the ungated layer").alone(),
+        Key::new("mesa", Kind::One(&MESA), "shape of the mesa").required().alone(),
+        Key::new("edge", Kind::One(&EDGE), "mixing of channels that run side by side").alone(),
+        Key::new("contact", Kind::Many(&CONTACT), "a contact; at least two are needed").required().alone(),
+        Key::new("gate", Kind::Many(&GATE), "a gate, with a filling under it at every point").alone(),
+        Key::new("step", Kind::Many(&STEP), "a part of the layer with a filling of its own and no gate").alone(),
+        Key::new("point", Kind::Many(&POINT), "an operating point; at least one is needed").required().alone(),
         Key::new("reading", Kind::Many(&READING), "a reading to print; without any a standard set is chosen"),
-        Key::new("bench", Kind::One(&BENCH), "several devices joined by wires").not_yet(ONE_DEVICE),
-        Key::new("link", Kind::Many(&LINK), "a wire between two devices").not_yet(ONE_DEVICE),
+        Key::new("bench", Kind::One(&BENCH), "devices with files of their own, in place of a mesa"),
+        Key::new("link", Kind::Many(&LINK), "a wire between contacts of a bench"),
     ],
 };
 
@@ -179,14 +178,21 @@ static READING: TableSpec = TableSpec {
     ],
 };
 
-static BENCH: TableSpec =
-    TableSpec { name: "bench", keys: &[Key::new("devices", Kind::Texts, "device files that are joined").required()] };
+static BENCH: TableSpec = TableSpec {
+    name: "bench",
+    keys: &[
+        Key::new("devices", Kind::Texts, "device files, relative to this one").required(),
+        Key::new("names", Kind::Names, "what the bench calls them; without it their ids"),
+        Key::new("posts", Kind::Names, "binding posts, on which wires meet beside the devices"),
+    ],
+};
 
 static LINK: TableSpec = TableSpec {
     name: "link",
     keys: &[
-        Key::new("from", Kind::Name, "device and contact where the wire starts").required(),
-        Key::new("to", Kind::Name, "device and contact where the wire ends").required(),
-        Key::new("ohm", Kind::Number(Range::NotNegative), "resistance of the wire").default("0"),
+        Key::new("from", Kind::Name, "where the wire starts: device and contact such as A:1, or a post").required(),
+        Key::new("to", Kind::Name, "where it ends").required(),
+        Key::new("ohm", Kind::Number(Range::NotNegative), "resistance of the wire; at 0 both ends are one")
+            .default("0"),
     ],
 };

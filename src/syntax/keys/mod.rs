@@ -38,6 +38,8 @@ pub struct Key {
     pub kind: Kind,
     /// Whether the table must have it.
     pub required: bool,
+    /// Whether it describes one device and so stands in no bench, where it is not required either.
+    pub alone: bool,
     /// What holds where it is absent, as a user would write it; empty where nothing is assumed.
     pub default: &'static str,
     /// One line for the guide.
@@ -100,6 +102,8 @@ pub enum Kind {
     Outlines,
     /// A list of lists of whole numbers, each number once.
     Groups,
+    /// A list of names.
+    Names,
     /// A list of texts.
     Texts,
     /// A table with keys of the user's choice and values of one kind.
@@ -127,11 +131,15 @@ pub enum Range {
 
 impl Key {
     const fn new(name: &'static str, kind: Kind, doc: &'static str) -> Self {
-        Self { name, kind, required: false, default: "", doc, status: Status::Applied }
+        Self { name, kind, required: false, alone: false, default: "", doc, status: Status::Applied }
     }
 
     const fn required(self) -> Self {
         Self { required: true, ..self }
+    }
+
+    const fn alone(self) -> Self {
+        Self { alone: true, ..self }
     }
 
     const fn default(self, default: &'static str) -> Self {

@@ -35,6 +35,7 @@ pub(super) fn judge(kind: &Kind, key: &str, node: &Node) -> Vec<Diagnostic> {
         Kind::Outline => list::outline(key, node),
         Kind::Outlines => list::each(key, node, list::outline),
         Kind::Groups => list::groups(key, node),
+        Kind::Names => list::each(key, node, word::name),
         Kind::Texts => list::each(key, node, word::text),
         Kind::Open(_) | Kind::One(_) | Kind::Many(_) => Vec::new(),
     }
