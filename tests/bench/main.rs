@@ -128,6 +128,16 @@ fn growth() {
         row("contacts", &[8, 16, 32, 64, 128], |contacts| Size { contacts, edge, ..base });
         row("gates", &[1, 2, 5, 10, 20, 40], |gates| Size { gates, edge, ..base });
     }
+    println!("steps of 40 gates at one polarity, in fractions and in floats:");
+    for edge in ["", "mixing = \"full\"", "mixing = { length_um = 100 }"] {
+        let texts = Texts { device: devices::device(Size { gates: 40, edge, ..base }), cooldown: None, readings: None };
+        let mut clock = Clock::default();
+        let solver = Solver::of(&texts, &mut clock);
+        let readings = edgesheet::resistance::standard_readings(&solver.network);
+        solver.solve(0, Polarity::Toward, &readings, &mut clock);
+        println!("{edge}");
+        print_steps(&clock);
+    }
     row("points", &[1, 2, 3, 4, 5, 6], |points| Size { points, ..base });
 }
 
