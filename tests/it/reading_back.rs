@@ -165,16 +165,16 @@ impl Picture {
         })
     }
 
-    /// Lines keep half a pitch apart: the heaviest pen is about half a pitch wide. Parts of one line do not count.
+    /// Lines keep about half a pitch apart, everywhere: the heaviest pen is about half a pitch wide where it is drawn, and
+    /// the widest pen of a line says what its pitch is. Parts of one line do not count.
     fn line_faults(&self) -> Vec<String> {
-        let heaviest = self.lines.iter().map(|line| line.half_mm * 2.0).fold(0.0, f64::max);
         let whole = self.whole_lines();
         let boxes: Vec<Box4> = self.lines.iter().map(|line| bounds(&line.points)).collect();
         let mut faults = Vec::new();
         for (at, line) in self.lines.iter().enumerate() {
             for (other_at, other) in self.lines[..at].iter().enumerate().filter(|(other, _)| whole[*other] != whole[at])
             {
-                let limit = (line.half_mm + other.half_mm).max(0.9 * heaviest);
+                let limit = (line.half_mm + other.half_mm).max(1.8 * line.half_mm.max(other.half_mm));
                 if are_far(boxes[at], boxes[other_at], limit) {
                     continue;
                 }

@@ -1,7 +1,7 @@
 //! Areas of the chip on the drawing: outlines of faces, and whether a point lies inside.
 
+use crate::figure::chip::chains::Chains;
 use crate::figure::chip::stretch::Frame;
-use crate::figure::chip::stretch::Plane;
 use crate::figure::scene::At;
 use crate::figure::scene::Segment;
 use crate::layout::FaceIdx;
@@ -16,11 +16,11 @@ pub(super) struct Area {
 
 impl Area {
     /// The area of all faces that are wanted.
-    pub fn of(layout: &Layout, plane: &Plane, wanted: impl Fn(FaceIdx, &FaceLabel) -> bool) -> Self {
+    pub fn of(layout: &Layout, chains: &Chains, wanted: impl Fn(FaceIdx, &FaceLabel) -> bool) -> Self {
         let inside = |face: FaceIdx| wanted(face, &layout.topology.faces[face.0]);
-        let pieces = layout.topology.pieces.iter().zip(&layout.positions.pieces);
-        let chains = pieces.filter_map(|(piece, corners)| {
-            let chain = plane.chain(corners);
+        let pieces = layout.topology.pieces.iter().zip(chains.all());
+        let chains = pieces.filter_map(|(piece, chain)| {
+            let chain = chain.clone();
             match (inside(piece.left), inside(piece.right)) {
                 (true, false) => Some(chain),
                 (false, true) => Some(chain.into_iter().rev().collect()),

@@ -3,7 +3,7 @@
 use std::collections::BTreeMap;
 
 use crate::figure::chip::ChipDrawing;
-use crate::figure::chip::offset::Bit;
+use crate::figure::chip::bit::Bit;
 use crate::figure::chip::strokes::Reach;
 use crate::figure::chip::style;
 use crate::figure::chip::vector::add;
@@ -28,16 +28,16 @@ pub(super) struct Arrow {
 }
 
 /// The arrowheads of all routes.
-pub(super) fn arrows(drawing: &ChipDrawing<'_>, reaches: &[Reach<'_>], pitch_mm: f64) -> Vec<Arrow> {
+pub(super) fn arrows(drawing: &ChipDrawing<'_>, reaches: &[Reach<'_>]) -> Vec<Arrow> {
     let mut routes: BTreeMap<Vec<(usize, bool)>, Vec<&Reach<'_>>> = BTreeMap::new();
     for reach in reaches {
         let steps = drawing.channels.courses[reach.lane.course].steps.iter();
         routes.entry(steps.map(|step| (step.piece.0, step.forward)).collect()).or_default().push(reach);
     }
-    routes.values().filter_map(|route| arrow(route, pitch_mm)).collect()
+    routes.values().filter_map(|route| arrow(route)).collect()
 }
 
-fn arrow(route: &[&Reach<'_>], pitch_mm: f64) -> Option<Arrow> {
+fn arrow(route: &[&Reach<'_>]) -> Option<Arrow> {
     let mut numbers: Vec<usize> = route.iter().map(|reach| reach.lane.number).collect();
     numbers.sort_unstable();
     numbers.dedup();
@@ -49,6 +49,7 @@ fn arrow(route: &[&Reach<'_>], pitch_mm: f64) -> Option<Arrow> {
         let rank = |run: (At, At)| (length(sub(run.1, run.0)) * 100.0).round();
         if rank(next.1) > rank(best.1) { next } else { best }
     })?;
+    let pitch_mm = reach.pitch_mm;
     let room_mm = length(sub(to, from));
     let long_mm = (1.35 * pitch_mm + 0.6).min(2.2).min(0.6 * room_mm);
     let half_mm = (0.68 * pitch_mm).min(0.4 * long_mm);

@@ -3,12 +3,15 @@
 use std::collections::BTreeMap;
 
 use crate::figure::chip::ChipDrawing;
-use crate::figure::chip::vector::dot;
-use crate::figure::chip::vector::length;
+use crate::figure::chip::pitches::Side;
+use crate::layout::FaceIdx;
+use crate::layout::FaceLabel;
 use crate::layout::PieceIdx;
+use crate::network::BandIdx;
 use crate::network::Carrier;
 use crate::network::Channels;
 use crate::network::Course;
+use crate::network::CourseStep;
 use crate::quantity::Polarity;
 
 /// Up to so many units of conductance of one carrier every unit has a line of its own.
@@ -98,38 +101,41 @@ pub(super) fn walked(course: &Course) -> Vec<Walked> {
     all
 }
 
-/// Whether the region of a carrier's channel lies on the right hand of its walk: of electrons at `+`, of holes at `−`.
-pub(super) fn region_on_right(carrier: Carrier, polarity: Polarity) -> bool {
-    (carrier == Carrier::Electron) == (polarity == Polarity::Toward)
-}
-
-/// Pairs of piece sides that follow each other on a course without a turn.
-fn straight_joints(drawing: &ChipDrawing<'_>) -> Vec<[(PieceIdx, bool); 2]> {
-    let mut joints = Vec::new();
-    for course in &drawing.channels.courses {
-        let on_right = region_on_right(drawing.channels.bands[course.band.0].carrier, drawing.polarity);
-        let mut walk = walked(course);
-        walk.extend(walk.first().copied().filter(|_| course.ends.is_none()));
-        let straight = walk.windows(2).filter(|pair| goes_straight(drawing, pair[0], pair[1]));
-        joints.extend(straight.map(|pair| [pair[0], pair[1]].map(|walked| (walked.piece, on_right == walked.forward))));
-    }
-    joints
-}
-
-/// Whether the walk turns by less than about 45° from one piece to the next; the drawing may bend what is nearly straight.
-fn goes_straight(drawing: &ChipDrawing<'_>, first: Walked, second: Walked) -> bool {
-    let corners = |walked: Walked| {
-        let mut corners = drawing.layout.positions.pieces[walked.piece.0].clone();
-        if !walked.forward {
-            corners.reverse();
-        }
-        corners
+/// Whether a channel of a band runs inside a face: its filling is of the band's sign and high enough. Edge modes, which
+/// have no fillings, run on the whole mesa.
+pub(super) fn holds(drawing: &ChipDrawing<'_>, band: BandIdx, face: FaceIdx) -> bool {
+    let band = &drawing.channels.bands[band.0];
+    let Some(filling) = drawing.fillings.get(face.0) else {
+        return matches!(drawing.layout.topology.faces[face.0], FaceLabel::Mesa(_));
     };
-    let (first, second) = (corners(first), corners(second));
-    let [.., a, b] = first[..] else { return false };
-    let [c, d, ..] = second[..] else { return false };
-    let (u, v) = (((b.0 - a.0) as f64, (b.1 - a.1) as f64), ((d.0 - c.0) as f64, (d.1 - c.1) as f64));
-    dot(u, v) > 0.7 * length(u) * length(v)
+    match band.carrier {
+        Carrier::Electron => *filling >= band.to,
+        Carrier::Hole => -filling.clone() >= band.to,
+    }
+}
+
+/// The side of a walked piece on which the channel's region lies. Beside contacts, which belong to every region's border,
+/// and for channels that run both ways, the carrier and the field say it: electrons at `+` and holes at `−` have their
+/// region on the right hand.
+pub(super) fn region_side(drawing: &ChipDrawing<'_>, band: BandIdx, walked: Walked) -> Side {
+    let piece = drawing.layout.topology.pieces[walked.piece.0];
+    let is_contact = |face: FaceIdx| matches!(drawing.layout.topology.faces[face.0], FaceLabel::Contact(_));
+    let inside = |face: FaceIdx| is_contact(face) || holds(drawing, band, face);
+    let is_mesa = |face: FaceIdx| matches!(drawing.layout.topology.faces[face.0], FaceLabel::Mesa(_));
+    let side = |right: bool, left: bool| (right != left).then_some(right);
+    let of_carrier =
+        (drawing.channels.bands[band.0].carrier == Carrier::Electron) == (drawing.polarity == Polarity::Toward);
+    let on_right = side(inside(piece.right), inside(piece.left))
+        .or(side(is_mesa(piece.right), is_mesa(piece.left)))
+        .unwrap_or(of_carrier == walked.forward);
+    Side { piece: walked.piece.0, on_right }
+}
+
+/// The face in which the channel of a step runs.
+pub(super) fn region_of(drawing: &ChipDrawing<'_>, band: BandIdx, step: CourseStep) -> FaceIdx {
+    let walked = Walked { piece: step.piece, forward: step.forward, part: Part::Before };
+    let piece = drawing.layout.topology.pieces[step.piece.0];
+    if region_side(drawing, band, walked).on_right { piece.right } else { piece.left }
 }
 
 /// Which lines run along one side of a piece: numbers `from..to` in the nest.
@@ -145,13 +151,13 @@ pub(super) struct Nests(Vec<[Option<Nest>; 2]>);
 
 impl Nests {
     /// Collects what runs where.
-    pub fn new(channels: &Channels, lines: &[Lines], polarity: Polarity, pieces: usize) -> Self {
-        let mut nests = vec![[None; 2]; pieces];
-        for course in &channels.courses {
+    pub fn new(drawing: &ChipDrawing<'_>, lines: &[Lines]) -> Self {
+        let mut nests = vec![[None; 2]; drawing.layout.topology.pieces.len()];
+        for course in &drawing.channels.courses {
             let lines = lines[course.band.0];
-            let on_right = region_on_right(channels.bands[course.band.0].carrier, polarity);
             for walked in walked(course) {
-                let side = &mut nests[walked.piece.0][usize::from(on_right == walked.forward)];
+                let Side { piece, on_right } = region_side(drawing, course.band, walked);
+                let side = &mut nests[piece][usize::from(on_right)];
                 let held = side.unwrap_or(Nest { from: lines.first, to: lines.end() });
                 *side = Some(Nest { from: held.from.min(lines.first), to: held.to.max(lines.end()) });
             }
@@ -159,44 +165,13 @@ impl Nests {
         Self(nests)
     }
 
-    /// The same with places kept free for absent outer lines, so that no line changes its depth where a border goes
-    /// straight on.
-    pub fn levelled(&self, drawing: &ChipDrawing<'_>) -> Self {
-        let joints: Vec<[(PieceIdx, bool); 2]> = straight_joints(drawing);
-        let mut nests = self.clone();
-        loop {
-            let before = nests.clone();
-            for [(first, one), (second, other)] in &joints {
-                let [a, b] = [(first, one), (second, other)].map(|(piece, right)| nests.beside(*piece, *right));
-                let least = a.into_iter().chain(b).map(|nest| nest.from).min().unwrap_or(0);
-                nests.lower(*first, *one, least);
-                nests.lower(*second, *other, least);
-            }
-            if nests == before {
-                return nests;
-            }
-        }
-    }
-
-    /// The same with a place for every line along every border.
-    pub fn complete(&self) -> Self {
-        let complete = |nest: Option<Nest>| nest.map(|nest| Nest { from: 0, ..nest });
-        Self(self.0.iter().map(|sides| sides.map(complete)).collect())
-    }
-
-    fn lower(&mut self, piece: PieceIdx, on_right: bool, from: usize) {
-        if let Some(nest) = &mut self.0[piece.0][usize::from(on_right)] {
-            nest.from = nest.from.min(from);
-        }
-    }
-
     /// The nest on one side of a piece, if any line runs there.
-    pub fn beside(&self, piece: PieceIdx, on_right: bool) -> Option<Nest> {
-        self.0[piece.0][usize::from(on_right)]
+    pub fn beside(&self, side: Side) -> Option<Nest> {
+        self.0[side.piece][usize::from(side.on_right)]
     }
 
     /// How many lines run on one side of a piece.
-    pub fn count(&self, piece: PieceIdx, on_right: bool) -> usize {
-        self.beside(piece, on_right).map_or(0, |nest| nest.to - nest.from)
+    pub fn count(&self, side: Side) -> usize {
+        self.beside(side).map_or(0, |nest| nest.to - nest.from)
     }
 }

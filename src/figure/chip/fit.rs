@@ -1,10 +1,12 @@
-//! The search for a drawing that fits: pitch, room for names and margins are tried from the most generous on.
+//! The search for a drawing that fits: to scale where lines and labels have room, in a stretched plane otherwise; pitch,
+//! room for names and margins are tried from the most generous on.
 
 use std::collections::BTreeSet;
 
 use crate::figure::chip::ChipDrawing;
 use crate::figure::chip::area::Area;
 use crate::figure::chip::arrows::arrows;
+use crate::figure::chip::chains::Chains;
 use crate::figure::chip::courses::Lines;
 use crate::figure::chip::courses::Nests;
 use crate::figure::chip::courses::lines;
@@ -15,8 +17,8 @@ use crate::figure::chip::labels;
 use crate::figure::chip::labels::Labelled;
 use crate::figure::chip::labels::Sketch;
 use crate::figure::chip::lanes::Ground;
-use crate::figure::chip::lanes::Lane;
-use crate::figure::chip::lanes::are_clear;
+use crate::figure::chip::lanes::Laid;
+use crate::figure::chip::pitches::Side;
 use crate::figure::chip::scan::Along;
 use crate::figure::chip::scan::Gap;
 use crate::figure::chip::scenery;
@@ -26,7 +28,10 @@ use crate::figure::chip::strokes::mixing_areas;
 use crate::figure::chip::strokes::mixing_bundles;
 use crate::figure::chip::strokes::reaches;
 use crate::figure::chip::strokes::stroke;
-use crate::figure::scene::At;
+use crate::figure::chip::vector::cross;
+use crate::figure::chip::vector::dot;
+use crate::figure::chip::vector::length;
+use crate::figure::chip::walls::Walls;
 use crate::figure::scene::Mark;
 use crate::figure::scene::Scene;
 use crate::layout::FaceLabel;
@@ -43,8 +48,33 @@ const PITCHES_MM: [f64; 16] =
 /// Below this pitch names move out of their contacts to give the lines more room.
 const LEAST_WITH_NAMES_MM: f64 = 0.5;
 
+/// A drawing to scale is not even tried where the lines at a contact would be closer than this, in mm.
+const LEAST_DOOR_MM: f64 = 0.3;
+
+/// A drawing to scale is kept when its narrowest lines are at least so far apart, in mm, or its lines on average not much
+/// closer than a stretched plane would have them.
+#[derive(Clone, Copy)]
+struct Worth {
+    least_mm: f64,
+    share: f64,
+}
+
+/// Of a chip about as wide as high; stretching shows nothing better there.
+const COMPACT: Worth = Worth { least_mm: 0.5, share: 0.6 };
+
+/// Of a long one, which gains most by being shortened.
+const LONG: Worth = Worth { least_mm: 0.85, share: 0.9 };
+
+/// A chip is long when it is so many times as long as wide.
+const ASPECT: f64 = 1.8;
+
+/// A straight stretch of border is at least so many pitches long, so that lines are seen to run along it.
+const LEAST_RUN: f64 = 0.8;
+
 /// Margins that are tried, in mm: above the chip, below it, at its sides.
-const MARGINS_MM: [(f64, f64, f64); 4] = [(5.0, 5.0, 0.8), (8.0, 8.0, 1.5), (12.0, 11.0, 4.0), (16.0, 14.0, 8.0)];
+const MARGINS_MM: [Margins; 4] = [(5.0, 5.0, 0.8), (8.0, 8.0, 1.5), (12.0, 11.0, 4.0), (16.0, 14.0, 8.0)];
+
+type Margins = (f64, f64, f64);
 
 /// Whether contacts and gates are made large enough for their labels.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -53,22 +83,20 @@ enum Names {
     Anywhere,
     /// Contacts and gaps may be as narrow as their lines allow.
     Squeezed,
-    /// The same, and every stretch holds all lines twice: for corners that nearly meet.
-    Even,
 }
 
 /// The best drawing: the first on which every label has a free place, otherwise the one that lacks fewest.
 pub(super) fn best(drawing: &ChipDrawing<'_>) -> Scene {
     let lines = lines(drawing.channels);
-    let nests = Nests::new(drawing.channels, &lines, drawing.polarity, drawing.layout.topology.pieces.len());
-    let mut nests = vec![nests.complete(), nests.levelled(drawing), nests];
-    nests.dedup();
-    let needs = [Along::X, Along::Y].map(|along| Needs::new(drawing.layout, along));
-    let mixing = mixing_bundles(drawing);
-    let fit = Fit { drawing, lines: &lines, nests: &nests, mixing: &mixing, needs: &needs };
+    let nests = Nests::new(drawing, &lines);
+    let needs =
+        (!is_curved(drawing.layout)).then(|| [Along::X, Along::Y].map(|along| Needs::new(drawing.layout, along)));
+    let (mixing, walls) = (mixing_bundles(drawing), Walls::new(drawing));
+    let fit = Fit { drawing, lines: &lines, nests: &nests, mixing: &mixing, walls: &walls, needs: needs.as_ref() };
     let mut best: Option<(usize, Scene)> = None;
     for margins in MARGINS_MM {
-        let Some((scene, lack)) = fit.scene(margins) else { continue };
+        let Some(placed) = fit.placed(margins) else { continue };
+        let (scene, lack) = fit.finished(&placed, margins);
         // Once more margin gives no label a place, still more would only take room from the lines.
         if best.as_ref().is_some_and(|(least, _)| lack >= *least) {
             break;
@@ -81,44 +109,19 @@ pub(super) fn best(drawing: &ChipDrawing<'_>) -> Scene {
     best.map_or(Scene { width_mm: drawing.size_mm.0, height_mm: 0.0, marks: Vec::new() }, |(_, scene)| scene)
 }
 
-/// One try.
-#[derive(Clone, Copy)]
-struct Way<'a> {
-    names: Names,
-    nests: &'a Nests,
-    pitch_mm: f64,
-}
+/// Slight bends of borders from which a layout counts as curved.
+const CURVED: usize = 12;
 
-impl Way<'_> {
-    /// How wide the face between two borders must be on the drawing.
-    fn room_mm(self, layout: &Layout, drawing: &ChipDrawing<'_>, gap: Gap) -> f64 {
-        let Way { names, pitch_mm, .. } = self;
-        let count: usize = gap.sides.iter().map(|&(piece, on_right)| self.nests.count(piece, on_right)).sum();
-        let for_lines = (count as f64 + 1.0) * pitch_mm;
-        let least = match &layout.topology.faces[gap.face.0] {
-            _ if matches!(names, Names::Squeezed | Names::Even) => 0.4,
-            FaceLabel::Vacuum if between_devices(layout, gap) => 6.0,
-            FaceLabel::Vacuum => 1.2,
-            FaceLabel::Contact(contact) => match (names, gap.along) {
-                (Names::Inside, Along::X) => labels::room_for_name(&drawing.names.contacts[contact.0].name),
-                (Names::Inside, Along::Y) => 4.2,
-                _ => 1.6,
-            },
-            FaceLabel::Mesa(cover) => match (names, gap.along) {
-                (Names::Inside, Along::X) if !cover.is_empty() => (count as f64 + 1.0) * pitch_mm + 4.0,
-                (Names::Inside, _) => 1.0,
-                _ => 0.6,
-            },
-        };
-        for_lines.max(least)
-    }
-
-    /// How wide an edge of a contact must be for the lines that come and go through it.
-    fn door_mm(self, door: Door) -> f64 {
-        let sides = door.sides.into_iter().flatten();
-        let count: usize = sides.map(|(piece, on_right)| self.nests.count(piece, on_right)).sum();
-        (count as f64 + 1.0) * self.pitch_mm
-    }
+/// Whether borders bend so slightly and often that they stand for curves: these must not be stretched.
+fn is_curved(layout: &Layout) -> bool {
+    let step = |a: (i64, i64), b: (i64, i64)| ((b.0 - a.0) as f64, (b.1 - a.1) as f64);
+    let is_slight = |corners: &&[(i64, i64)]| {
+        let (u, v) = (step(corners[0], corners[1]), step(corners[1], corners[2]));
+        let sine = cross(u, v).abs() / (length(u) * length(v));
+        sine > 0.02 && sine < 0.45 && dot(u, v) > 0.0
+    };
+    let bends = layout.positions.pieces.iter().flat_map(|corners| corners.windows(3));
+    bends.filter(is_slight).count() >= CURVED
 }
 
 /// Whether a gap lies between two devices of a bench.
@@ -130,115 +133,175 @@ fn between_devices(layout: &Layout, gap: Gap) -> bool {
 struct Fit<'a> {
     drawing: &'a ChipDrawing<'a>,
     lines: &'a [Lines],
-    /// Ways to nest the lines: the last is the densest, those before give up places for evenness.
-    nests: &'a [Nests],
+    nests: &'a Nests,
     mixing: &'a BTreeSet<BundleIdx>,
-    /// What needs room along x and along y.
-    needs: &'a [Needs; 2],
+    walls: &'a Walls,
+    /// What needs room along x and along y; none for curves, which are never stretched.
+    needs: Option<&'a [Needs; 2]>,
 }
 
-/// A plane on which all lines keep clear, with everything drawn on it.
+/// A plane with all lines on it.
 struct Placed {
     plane: Plane,
+    chains: Chains,
     contacts: Vec<Area>,
     chip: Area,
-    lanes: Vec<Lane>,
-    pitch_mm: f64,
+    laid: Laid,
 }
 
 impl Fit<'_> {
-    /// The drawing with the widest pitch that fits between margins, and how many labels found no place.
-    fn scene(&self, margins: (f64, f64, f64)) -> Option<(Scene, usize)> {
-        let generous = PITCHES_MM.iter().take_while(|&&pitch_mm| pitch_mm >= LEAST_WITH_NAMES_MM).count();
-        let rules = [
-            (Names::Inside, &PITCHES_MM[..generous]),
-            (Names::Anywhere, &PITCHES_MM),
-            (Names::Squeezed, &PITCHES_MM),
-            (Names::Even, &PITCHES_MM),
-        ];
-        let halved = rules.iter().find_map(|&(names, pitches)| self.widest(names, pitches, margins));
-        let tried = || {
-            let all = rules.iter().flat_map(|&(names, pitches)| pitches.iter().map(move |&pitch_mm| (names, pitch_mm)));
-            all.into_iter().find_map(|(names, pitch_mm)| self.nested(names, pitch_mm, margins))
-        };
-        Some(self.finished(&halved.or_else(tried)?, margins))
-    }
-
-    /// The widest pitch that fits, by halving: lines that fit also fit when they lie closer. Should that once not hold,
-    /// a narrower pitch is found, or none; what is found has been tried all the same.
-    fn widest(&self, names: Names, pitches_mm: &[f64], margins: (f64, f64, f64)) -> Option<Placed> {
-        let (mut low, mut high) = (0, pitches_mm.len());
-        let mut widest = None;
-        while low < high {
-            let middle = (low + high) / 2;
-            match self.nested(names, pitches_mm[middle], margins) {
-                Some(placed) => (widest, high) = (Some(placed), middle),
-                None => low = middle + 1,
-            }
-        }
-        widest
-    }
-
-    /// Lines at one pitch, nested as densely as possible first.
-    fn nested(&self, names: Names, pitch_mm: f64, margins: (f64, f64, f64)) -> Option<Placed> {
-        let ways = self.nests.iter().rev().map(|nests| Way { names, nests, pitch_mm });
-        ways.into_iter().find_map(|way| self.placed(way, margins))
-    }
-
-    fn placed(&self, way: Way<'_>, (above, below, beside): (f64, f64, f64)) -> Option<Placed> {
-        let layout = self.drawing.layout;
+    /// To scale where that leaves the lines room, otherwise stretched; whichever is better where neither does well.
+    fn placed(&self, (above, below, beside): Margins) -> Option<Placed> {
         let (width, height) = self.drawing.size_mm;
         let frame = Frame { left: beside, top: above, right: width - beside, bottom: height - below };
-        let demands = [0, 1].map(|axis| {
-            let needs = &self.needs[axis];
-            let mut all = needs.demands(|gap| way.room_mm(layout, self.drawing, gap), |door| way.door_mm(door));
-            let stretches = (1..needs.coordinates.len()).filter(|_| way.names == Names::Even);
-            all.extend(stretches.map(|to| self.even(to, way.pitch_mm)));
-            all
-        });
-        let plane = Plane::new(self.needs, demands, frame)?;
-        let contacts: Vec<Area> = (0..self.drawing.names.contacts.len())
-            .map(|contact| {
-                Area::of(layout, &plane, |_, label| matches!(label, FaceLabel::Contact(at) if at.0 == contact))
-            })
-            .collect();
-        let chip = Area::of(layout, &plane, |_, label| !matches!(label, FaceLabel::Vacuum));
-        let (drawing, lines, Way { names: _, nests, pitch_mm }) = (self.drawing, self.lines, way);
-        let chains: Vec<Vec<At>> = layout.positions.pieces.iter().map(|piece| plane.chain(piece)).collect();
-        let ground =
-            Ground { drawing, chains: &chains, lines, nests, contacts: &contacts, mixing: self.mixing, pitch_mm };
-        let lanes = ground.lanes()?;
-        are_clear(&ground, &lanes, &chip).then_some(())?;
-        Some(Placed { plane, contacts, chip, lanes, pitch_mm })
+        let plane = Plane::to_scale(self.drawing.layout, frame).filter(|plane| self.has_doors(plane));
+        let to_scale = plane.map(|plane| self.laid(plane, WIDEST_PITCH_MM));
+        let Worth { least_mm, share } = self.worth();
+        let is_good = |placed: &Placed| placed.laid.near == 0 && placed.laid.least_mm >= least_mm;
+        if self.needs.is_none() || to_scale.as_ref().is_some_and(is_good) {
+            return to_scale;
+        }
+        let stretched = self.stretched(frame);
+        let (Some(first), Some(second)) = (&to_scale, &stretched) else { return to_scale.or(stretched) };
+        let faults = |placed: &Placed| (placed.laid.crossings, placed.laid.near);
+        let keeps_scale = match faults(first).cmp(&faults(second)) {
+            std::cmp::Ordering::Equal => first.laid.mean_mm >= share * second.laid.mean_mm,
+            order => order.is_lt(),
+        };
+        if keeps_scale { to_scale } else { stretched }
     }
 
-    /// Room for all lines on both sides between two neighbouring coordinates.
-    fn even(&self, to: usize, pitch_mm: f64) -> Demand {
-        let most = self.lines.iter().map(|lines| lines.end()).max().unwrap_or(0);
-        Demand { from: to - 1, to, mm: (2 * most + 1) as f64 * pitch_mm }
+    fn worth(&self) -> Worth {
+        let points = || self.drawing.layout.positions.pieces.iter().flatten();
+        let extent = |of: fn(&(i64, i64)) -> i64| {
+            let (low, high) = (points().map(of).min(), points().map(of).max());
+            (high.unwrap_or(0) - low.unwrap_or(0)) as f64
+        };
+        let (wide, high) = (extent(|point| point.0), extent(|point| point.1));
+        if wide.max(high) > ASPECT * wide.min(high) { LONG } else { COMPACT }
     }
 
-    fn finished(&self, placed: &Placed, (_, below, _): (f64, f64, f64)) -> (Scene, usize) {
+    /// Whether the edges of contacts are wide enough for their lines on a plane; on curves they must do.
+    fn has_doors(&self, plane: &Plane) -> bool {
+        let scale = plane.mm_per_nm.unwrap_or(0.0);
+        let mut doors = self.needs.into_iter().flatten().flat_map(Needs::doors);
+        doors.all(|(nm, door)| nm as f64 * scale >= self.door_mm(door, LEAST_DOOR_MM))
+    }
+
+    /// The stretched plane with the widest pitch whose demands a frame can meet. Should lines still cross there, closer
+    /// ones are tried.
+    fn stretched(&self, frame: Frame) -> Option<Placed> {
+        let (plane, pitch_mm) = self.widest(frame, WIDEST_PITCH_MM)?;
+        let mut best = self.laid(plane, pitch_mm);
+        if best.laid.crossings > 0 {
+            let closer = self.widest(frame, pitch_mm / 3.0).map(|(plane, pitch_mm)| self.laid(plane, pitch_mm));
+            best = closer.filter(|closer| closer.laid.crossings < best.laid.crossings).unwrap_or(best);
+        }
+        Some(best)
+    }
+
+    /// The stretched plane with the widest pitch up to a limit.
+    fn widest(&self, frame: Frame, limit_mm: f64) -> Option<(Plane, f64)> {
+        let needs = self.needs?;
+        let start = PITCHES_MM.partition_point(|&pitch_mm| pitch_mm > limit_mm).min(PITCHES_MM.len() - 1);
+        let generous = PITCHES_MM.partition_point(|&pitch_mm| pitch_mm >= LEAST_WITH_NAMES_MM).max(start);
+        let rules = [
+            (Names::Inside, &PITCHES_MM[start..generous]),
+            (Names::Anywhere, &PITCHES_MM[start..]),
+            (Names::Squeezed, &PITCHES_MM[start..]),
+        ];
+        rules.into_iter().find_map(|(names, pitches_mm)| {
+            let plane = |pitch_mm: f64| Plane::new(needs, self.demands(needs, (names, pitch_mm)), frame);
+            let first = pitches_mm.partition_point(|&pitch_mm| plane(pitch_mm).is_none());
+            let pitch_mm = *pitches_mm.get(first)?;
+            Some((plane(pitch_mm)?, pitch_mm))
+        })
+    }
+
+    fn demands(&self, needs: &[Needs; 2], (names, pitch_mm): (Names, f64)) -> [Vec<Demand>; 2] {
+        let layout = self.drawing.layout;
+        needs.each_ref().map(|needs| {
+            let rooms = |gap| self.room_mm(layout, (names, pitch_mm), gap);
+            needs.demands(rooms, |door| self.door_mm(door, pitch_mm), LEAST_RUN * pitch_mm)
+        })
+    }
+
+    /// How wide the face between two borders must be on the drawing.
+    fn room_mm(&self, layout: &Layout, (names, pitch_mm): (Names, f64), gap: Gap) -> f64 {
+        let count: usize = gap.sides.iter().map(|&(piece, on_right)| self.count(piece.0, on_right)).sum();
+        let for_lines = (count as f64 + 1.0) * pitch_mm;
+        let least = match &layout.topology.faces[gap.face.0] {
+            _ if names == Names::Squeezed => 0.4,
+            FaceLabel::Vacuum if between_devices(layout, gap) => 6.0,
+            FaceLabel::Vacuum => 1.2,
+            FaceLabel::Contact(contact) => match (names, gap.along) {
+                (Names::Inside, Along::X) => labels::room_for_name(&self.drawing.names.contacts[contact.0].name),
+                (Names::Inside, Along::Y) => 4.2,
+                _ => 1.6,
+            },
+            FaceLabel::Mesa(cover) => match (names, gap.along) {
+                (Names::Inside, Along::X) if !cover.is_empty() => for_lines + 4.0,
+                (Names::Inside, _) => 1.0,
+                _ => 0.6,
+            },
+        };
+        for_lines.max(least)
+    }
+
+    /// How wide an edge of a contact must be for the lines that come and go through it.
+    fn door_mm(&self, door: Door, pitch_mm: f64) -> f64 {
+        let sides = door.sides.into_iter().flatten();
+        let count: usize = sides.map(|(piece, on_right)| self.count(piece.0, on_right)).sum();
+        (count as f64 + 1.0) * pitch_mm
+    }
+
+    fn count(&self, piece: usize, on_right: bool) -> usize {
+        self.nests.count(Side { piece, on_right })
+    }
+
+    fn laid(&self, plane: Plane, pitch_mm: f64) -> Placed {
+        let layout = self.drawing.layout;
+        let chains = Chains::new(layout, &plane);
+        let contact = |contact: usize| {
+            Area::of(layout, &chains, |_, label| matches!(label, FaceLabel::Contact(at) if at.0 == contact))
+        };
+        let contacts: Vec<Area> = (0..self.drawing.names.contacts.len()).map(contact).collect();
+        let chip = Area::of(layout, &chains, |_, label| !matches!(label, FaceLabel::Vacuum));
+        let ground = Ground {
+            drawing: self.drawing,
+            chains: &chains,
+            lines: self.lines,
+            nests: self.nests,
+            contacts: &contacts,
+            walls: self.walls,
+            mixing: self.mixing,
+            pitch_mm,
+        };
+        let laid = ground.lanes();
+        Placed { plane, chains, contacts, chip, laid }
+    }
+
+    fn finished(&self, placed: &Placed, (_, below, _): Margins) -> (Scene, usize) {
         let drawing = self.drawing;
-        let reaches = reaches(drawing, &placed.lanes, self.mixing);
-        let arrows = arrows(drawing, &reaches, placed.pitch_mm);
-        let overlays = scenery::overlays(drawing, &placed.plane);
+        let reaches = reaches(drawing, &placed.laid.lanes, self.mixing);
+        let arrows = arrows(drawing, &reaches);
+        let overlays = scenery::overlays(drawing, &placed.chains);
         let height_mm = placed.plane.covered().bottom + below;
         let sketch = Sketch {
             drawing,
             contacts: &placed.contacts,
             chip: &placed.chip,
             overlays: &overlays,
-            plane: &placed.plane,
+            chains: &placed.chains,
+            mm_per_nm: placed.plane.mm_per_nm,
             reaches: &reaches,
             arrows: &arrows,
-            pitch_mm: placed.pitch_mm,
             height_mm,
         };
         let Labelled { marks: labels, lack } = labels::labels(&sketch);
-        let mut marks: Vec<Mark> = scenery::under(drawing, &placed.plane, &overlays);
-        marks.extend(mixing_areas(drawing, &placed.plane, &reaches, placed.pitch_mm));
-        marks.extend(reaches.iter().map(|reach| stroke(reach, placed.pitch_mm)));
+        let mut marks: Vec<Mark> = scenery::under(drawing, &placed.chains, &overlays);
+        marks.extend(mixing_areas(drawing, &placed.chains, &reaches));
+        marks.extend(reaches.iter().map(stroke));
         marks.extend(arrows.into_iter().map(|arrow| arrow.mark));
         marks.extend(scenery::contacts(&placed.contacts));
         marks.extend(labels);

@@ -4,13 +4,13 @@ use crate::figure::chip::ChipDrawing;
 use crate::figure::chip::OverlayLook;
 use crate::figure::chip::area::Area;
 use crate::figure::chip::arrows::Arrow;
+use crate::figure::chip::bit::Bit;
+use crate::figure::chip::chains::Chains;
 use crate::figure::chip::obstacles::Obstacles;
-use crate::figure::chip::offset::Bit;
 use crate::figure::chip::scenery;
 use crate::figure::chip::scenery::SYMBOL_MM;
 use crate::figure::chip::shares;
 use crate::figure::chip::stretch::Frame;
-use crate::figure::chip::stretch::Plane;
 use crate::figure::chip::strokes::Reach;
 use crate::figure::chip::style;
 use crate::figure::chip::texts::Wording;
@@ -25,10 +25,11 @@ pub(super) struct Sketch<'a> {
     /// Mesa and contacts.
     pub chip: &'a Area,
     pub overlays: &'a [Area],
-    pub plane: &'a Plane,
+    pub chains: &'a Chains,
+    /// Millimetres per nanometre, where the drawing is to scale.
+    pub mm_per_nm: Option<f64>,
     pub reaches: &'a [Reach<'a>],
     pub arrows: &'a [Arrow],
-    pub pitch_mm: f64,
     pub height_mm: f64,
 }
 
@@ -71,6 +72,27 @@ fn small(text: String) -> Wording {
     Wording::new(text, Face::Regular, style::SMALL_PT, style::GREY)
 }
 
+/// Longest scale bar in mm.
+const LONGEST_BAR_MM: f64 = 20.0;
+
+/// The largest length of one, two or five units of a power of ten nanometres that a scale bar may show, and its
+/// millimetres.
+fn scale_bar(mm_per_nm: f64) -> Option<(u64, f64)> {
+    let powers = (0..10).map(|power| 10_u64.pow(power));
+    let lengths = powers.flat_map(|power| [1, 2, 5].map(|times| times * power));
+    let shown = lengths.map(|nm| (nm, nm as f64 * mm_per_nm)).take_while(|(_, mm)| *mm <= LONGEST_BAR_MM);
+    shown.last()
+}
+
+/// A length in the largest unit that keeps it whole.
+fn length_words(nm: u64) -> String {
+    match nm {
+        nm if nm % 1_000_000 == 0 => format!("{} mm", nm / 1_000_000),
+        nm if nm % 1000 == 0 => format!("{} µm", nm / 1000),
+        nm => format!("{nm} nm"),
+    }
+}
+
 /// Which contacts choose first where their name shall stand.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 enum Order {
@@ -105,7 +127,7 @@ fn labels_in_order(sketch: &Sketch<'_>, order: Order) -> Labelled {
 
 fn obstacles(sketch: &Sketch<'_>) -> Obstacles {
     let strokes = sketch.reaches.iter().flat_map(|reach| {
-        let half_mm = style::channel_pen(reach.potential, sketch.pitch_mm).width_mm / 2.0;
+        let half_mm = style::channel_pen(reach.potential, reach.pitch_mm).width_mm / 2.0;
         reach.bits.iter().flat_map(Bit::straightened).map(move |stretch| (stretch, half_mm))
     });
     let arrows = sketch.arrows.iter().map(|arrow| Area { rings: vec![arrow.corners.to_vec()] });
@@ -116,8 +138,7 @@ fn obstacles(sketch: &Sketch<'_>) -> Obstacles {
 
 /// Rims and borders of regions, which no text should touch.
 fn borders<'a>(sketch: &'a Sketch<'_>) -> impl Iterator<Item = ((At, At), f64)> + 'a {
-    let pieces = sketch.drawing.layout.positions.pieces.iter();
-    let chains = pieces.map(|corners| sketch.plane.chain(corners));
+    let chains = sketch.chains.all().iter();
     chains.flat_map(|chain| chain.windows(2).map(|pair| ((pair[0], pair[1]), 0.1)).collect::<Vec<_>>())
 }
 
@@ -133,8 +154,22 @@ impl Placing<'_> {
         let corner = Frame { left: 0.5, top: height - 4.5, right: 4.5, bottom: height - 0.5 };
         self.obstacles.add_box(corner);
         self.done.marks.push(scenery::orientation_mark(corner));
-        let note = small("not to scale".to_owned());
-        self.put(&note, (width - 0.5 - note.width() / 2.0, height - 1.6));
+        self.scale((width - 0.5, height - 1.6));
+    }
+
+    /// A scale bar with its length, or the note that there is no scale; `end` is its right end.
+    fn scale(&mut self, end: At) {
+        let (words, bar_mm) = match self.sketch.mm_per_nm.and_then(scale_bar) {
+            Some((nm, bar_mm)) => (length_words(nm), bar_mm),
+            None => ("not to scale".to_owned(), 0.0),
+        };
+        let note = small(words);
+        self.put(&note, (end.0 - note.width() / 2.0, end.1));
+        if bar_mm > 0.0 {
+            let right = end.0 - note.width() - 1.4;
+            self.done.marks.push(scenery::scale_bar((right - bar_mm, end.1), bar_mm));
+            self.obstacles.add_stroke((((right - bar_mm, end.1), (right, end.1)), 0.8));
+        }
     }
 
     fn contact_names(&mut self, order: Order) {

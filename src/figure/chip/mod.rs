@@ -1,7 +1,7 @@
 //! The drawing of a chip with its edge channels at one polarity.
 //!
 //! The chip is drawn in a stretched plane (`stretch`), the channels as lines inside their regions (`courses`, `border`,
-//! `offset`, `round`, `lanes`), cut where their potential changes (`strokes`), with arrows, labels and scenery around.
+//! `offset`, `round`, `ends`, `lanes`), cut where their potential changes (`strokes`), with arrows, labels and scenery around.
 
 use crate::figure::scene::Scene;
 use crate::figure::scene::Stroke;
@@ -21,15 +21,20 @@ pub use style::key_pens;
 
 mod area;
 mod arrows;
+mod bit;
 mod border;
+mod chains;
+mod clashes;
 mod courses;
 mod demand;
+mod ends;
 mod fit;
 mod labels;
 mod lanes;
 mod names;
 mod obstacles;
 mod offset;
+mod pitches;
 mod places;
 mod regions;
 mod round;
@@ -41,6 +46,7 @@ mod strokes;
 mod style;
 mod texts;
 mod vector;
+mod walls;
 
 /// What a chip drawing shows: finished values only.
 #[derive(Clone, Copy, Debug, PartialEq)]

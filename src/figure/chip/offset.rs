@@ -1,225 +1,231 @@
-//! A line at a depth inside its border: straight bits and round corners, cut where it leaves and enters contacts.
+//! A line at its depth inside a border: every stretch is moved inward, gaps round outer corners are bridged by arcs, and
+//! the loops that arise at inner corners are cut off where the line crosses itself.
 
-use crate::figure::chip::area::Area;
+use crate::figure::chip::bit::Bit;
+use crate::figure::chip::bit::meeting;
 use crate::figure::chip::border::Border;
 use crate::figure::chip::border::Edge;
 use crate::figure::chip::border::inset_meeting;
 use crate::figure::chip::border::is_straight;
+use crate::figure::chip::border::turns_inward;
 use crate::figure::chip::courses::Part;
-use crate::figure::chip::round::Centres;
-use crate::figure::chip::round::half_turn;
 use crate::figure::chip::round::handle;
 use crate::figure::chip::vector::add;
-use crate::figure::chip::vector::between;
 use crate::figure::chip::vector::cross;
 use crate::figure::chip::vector::dot;
 use crate::figure::chip::vector::length;
+use crate::figure::chip::vector::right_of;
 use crate::figure::chip::vector::sub;
 use crate::figure::chip::vector::times;
 use crate::figure::scene::At;
 
-/// A straight or round bit of a line.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub(super) struct Bit {
-    pub from: At,
-    pub to: At,
-    /// Control points of a round bit.
-    pub bend: Option<(At, At)>,
-    pub part: Part,
-    /// The bit runs against its border: there was no room for the line.
-    pub reversed: bool,
+/// A line without loops, its corners still sharp, and the stretches that it passes over.
+pub(super) struct Inset {
+    pub bits: Vec<Bit>,
+    /// Bits at which a longer way round was cut off, with the length of the border that the line does not follow there.
+    pub skips: Vec<([Bit; 2], f64)>,
 }
 
-/// The line at a depth inside a border.
-pub(super) fn inset(border: &Border, depth_mm: f64, centres: &Centres) -> Vec<Bit> {
-    let mut turns: Vec<Turn> = (0..=border.edges.len()).map(|at| turn(border, at, depth_mm, centres)).collect();
-    keep_between_corners(border, &mut turns);
+/// The line of a number inside a border. A closed line begins and ends in the middle of its longest straight bit.
+pub(super) fn inset(border: &Border, number: usize) -> Inset {
+    let bits = moved(border, number);
+    let visible = |bit: &Bit| matches!(bit.part, Part::Step(_)) && bit.bend.is_none();
+    let longest = |best: usize, next: usize| if bits[next].length() > bits[best].length() + 1e-9 { next } else { best };
+    let Some(seed) = (0..bits.len()).filter(|&at| visible(&bits[at])).reduce(longest) else {
+        return Inset { bits: Vec::new(), skips: Vec::new() };
+    };
+    let (early, late) = bits[seed].split(0.5);
+    if border.closed {
+        let around = std::iter::once(late).chain(bits[seed + 1..].iter().copied());
+        let around: Vec<Bit> = around.chain(bits[..seed].iter().copied()).chain([early]).collect();
+        return unlooped(&around);
+    }
+    let onward: Vec<Bit> = std::iter::once(late).chain(bits[seed + 1..].iter().copied()).collect();
+    let backward: Vec<Bit> =
+        std::iter::once(early).chain(bits[..seed].iter().rev().copied()).map(Bit::backward).collect();
+    let (onward, backward) = (unlooped(&onward), unlooped(&backward));
+    let mut whole: Vec<Bit> = backward.bits.into_iter().rev().map(Bit::backward).collect();
+    let mut rest = onward.bits.into_iter();
+    if let (Some(last), Some(first)) = (whole.last_mut(), rest.next()) {
+        last.to = first.to;
+    }
+    whole.extend(rest);
+    Inset { bits: whole, skips: backward.skips.into_iter().chain(onward.skips).collect() }
+}
+
+/// All stretches at their depth, with what joins them.
+fn moved(border: &Border, number: usize) -> Vec<Bit> {
     let mut bits = Vec::new();
+    let mut start = Joint::new(border, 0, number);
+    if !border.closed {
+        start.round.clear();
+    }
+    let first = start.round.clone();
     for (at, edge) in border.edges.iter().enumerate() {
-        let (start, end) = (&turns[at], &turns[at + 1]);
-        bits.extend(start.second.map(|bit| Bit { part: edge.part, ..bit }));
-        let reversed = dot(sub(end.begin, start.finish), edge.along) < -1e-9;
-        if start.finish != end.begin {
-            bits.push(Bit { from: start.finish, to: end.begin, bend: None, part: edge.part, reversed });
-        }
-        bits.extend(end.first.map(|bit| Bit { part: edge.part, ..bit }));
+        let end = Joint::new(border, at + 1, number);
+        bits.extend(if at == 0 { Vec::new() } else { start.round });
+        bits.push(bit(edge, start.out, end.into));
+        start = end;
+    }
+    if border.closed {
+        bits.extend(first);
     }
     bits
 }
 
-/// Where a border goes straight on, its parts meet beside their common point, unless a corner nearby has already carried
-/// the line past it: then they meet at the end of that corner.
-fn keep_between_corners(border: &Border, turns: &mut [Turn]) {
-    let last = border.edges.len();
-    let is_open =
-        |at: usize| at > 0 && at < last && border.before(at).is_some_and(|(into, out)| is_straight(into, out));
-    for at in (0..=last).filter(|&at| is_open(at)) {
-        if dot(sub(turns[at].begin, turns[at - 1].finish), border.edges[at - 1].along) < 0.0 {
-            turns[at] = Turn::sharp(turns[at - 1].finish);
+fn bit(edge: &Edge, from: At, to: At) -> Bit {
+    let pitch_mm = edge.pitch_mm.0.min(edge.pitch_mm.1);
+    Bit { from, to, bend: None, part: edge.part, pitch_mm, origin: edge.origin }
+}
+
+/// Where the stretch before a vertex ends, where the one after begins, and the arc between them.
+struct Joint {
+    into: At,
+    out: At,
+    round: Vec<Bit>,
+}
+
+impl Joint {
+    fn new(border: &Border, at: usize, number: usize) -> Self {
+        let end = |edge: &Edge| add(edge.to, times(edge.inward, edge.depth_mm(number).1));
+        let start = |edge: &Edge| add(edge.from, times(edge.inward, edge.depth_mm(number).0));
+        let Some((into, out)) = border.before(at) else {
+            let alone = border.edges.get(at).map(start).or(border.edges.last().map(end)).unwrap_or_default();
+            return Self { into: alone, out: alone, round: Vec::new() };
+        };
+        let (before, after) = (into.depth_mm(number).1, out.depth_mm(number).0);
+        if is_straight(into.along, out.along) {
+            let depth = (before + after) / 2.0;
+            let point = add(out.from, inset_meeting((into.inward, depth), (out.inward, depth)));
+            return Self { into: point, out: point, round: Vec::new() };
         }
-    }
-    for at in (0..=last).rev().filter(|&at| is_open(at)) {
-        if dot(sub(turns[at + 1].begin, turns[at].finish), border.edges[at].along) < 0.0 {
-            turns[at] = Turn::sharp(turns[at + 1].begin);
-        }
+        let round = if turns_inward(into, out) { Vec::new() } else { arc(into, out, (before, after)) };
+        Self { into: end(into), out: start(out), round }
     }
 }
 
-/// A corner of a line: where it begins and ends, and the two halves of its curve.
-struct Turn {
-    begin: At,
-    finish: At,
-    first: Option<Bit>,
-    second: Option<Bit>,
-}
-
-impl Turn {
-    fn sharp(at: At) -> Self {
-        Self { begin: at, finish: at, first: None, second: None }
-    }
-}
-
-fn turn(border: &Border, at: usize, depth_mm: f64, centres: &Centres) -> Turn {
-    let last = border.edges.len();
-    let Some((into, out)) =
-        border.before(if at == last && border.closed { 0 } else { at }).filter(|_| at < last || border.closed)
-    else {
-        let end = |edge: &Edge, point: At| add(point, times(edge.inward, depth_mm));
-        let first = border.edges.first().filter(|_| at == 0).map(|edge| end(edge, edge.from));
-        let point = first.or(border.edges.last().map(|edge| end(edge, edge.to)));
-        return Turn::sharp(point.unwrap_or((0.0, 0.0)));
+/// From one depth to another round an outer corner, in one or two curves of at most a quarter turn each.
+fn arc(into: &Edge, out: &Edge, (before, after): (f64, f64)) -> Vec<Bit> {
+    let corner = out.from;
+    let quarter = |edge: &Edge, (u, from): (At, f64), (v, to): (At, f64)| {
+        let sign = dot(right_of(into.along), into.inward).signum();
+        // The walk's direction at a normal: the normal turned back by a quarter.
+        let along = |normal: At| times(right_of(normal), -sign);
+        let reach = handle(half_turn(u, v));
+        let (start, end) = (add(corner, times(u, from)), add(corner, times(v, to)));
+        let bend = (add(start, times(along(u), reach * to)), sub(end, times(along(v), reach * from)));
+        Bit { bend: Some(bend), ..bit(edge, start, end) }
     };
-    let corner = add(out.from, inset_meeting((into.inward, depth_mm), (out.inward, depth_mm)));
-    let radius = if is_straight(into, out) { 0.0 } else { centres.radius(into, out, depth_mm) };
-    if radius > 1e-9 { curve(into, out, (corner, radius)) } else { Turn::sharp(corner) }
+    let sum = add(into.inward, out.inward);
+    let middle = if length(sum) > 1e-6 { times(sum, 1.0 / length(sum)) } else { into.along };
+    let between = (before + after) / 2.0;
+    vec![quarter(into, (into.inward, before), (middle, between)), quarter(out, (middle, between), (out.inward, after))]
 }
 
-fn curve(into: &Edge, out: &Edge, (corner, radius): (At, f64)) -> Turn {
-    let half = half_turn(into, out);
-    let begin = sub(corner, times(into.along, radius * half));
-    let finish = add(corner, times(out.along, radius * half));
-    let reach = radius * handle(half);
-    let bend = (add(begin, times(into.along, reach)), sub(finish, times(out.along, reach)));
-    let whole = Bit { from: begin, to: finish, bend: Some(bend), part: Part::Before, reversed: false };
-    let (first, second) = whole.split(0.5);
-    Turn { begin, finish, first: Some(first), second: Some(second) }
+/// Tangent of half the angle between two directions.
+pub(super) fn half_turn(into: At, out: At) -> f64 {
+    let cosine = dot(into, out).clamp(-0.999, 1.0);
+    ((1.0 - cosine) / (1.0 + cosine)).sqrt()
 }
 
-impl Bit {
-    /// The point at a share of the way.
-    pub fn at(&self, t: f64) -> At {
-        self.split(t).0.to
-    }
-
-    /// Both sides of a cut; a curve is cut by repeated linear division (de Casteljau).
-    pub fn split(self, t: f64) -> (Bit, Bit) {
-        let Some((first, second)) = self.bend else {
-            let middle = between(self.from, self.to, t);
-            return (Bit { to: middle, ..self }, Bit { from: middle, ..self });
-        };
-        let (a, b, c) = (between(self.from, first, t), between(first, second, t), between(second, self.to, t));
-        let (d, e) = (between(a, b, t), between(b, c, t));
-        let middle = between(d, e, t);
-        (Bit { to: middle, bend: Some((a, d)), ..self }, Bit { from: middle, bend: Some((e, c)), ..self })
-    }
-
-    /// Walked the other way.
-    pub fn backward(self) -> Bit {
-        Bit { from: self.to, to: self.from, bend: self.bend.map(|(a, b)| (b, a)), ..self }
-    }
-
-    /// Straight stretches that stand for the bit: 8 for a curve, which is off by less than 0.1 % of the radius for half
-    /// a quarter turn.
-    pub fn straightened(&self) -> Vec<(At, At)> {
-        let count = if self.bend.is_some() { 8 } else { 1 };
-        let points: Vec<At> = (0..=count).map(|at| self.at(at as f64 / count as f64)).collect();
-        points.windows(2).map(|pair| (pair[0], pair[1])).collect()
-    }
+/// Stretches that stand for bits, with the number of their bit and their share of it.
+struct Chord {
+    ends: (At, At),
+    bit: usize,
+    from: f64,
+    step: f64,
 }
 
-/// How far a line is drawn on inside a contact, in pitches: less than the depth at which it might turn there.
-pub(super) const HIDDEN: f64 = 0.4;
-
-/// And not further than this, in mm, so that it stays clear of the name.
-pub(super) const HIDDEN_MM: f64 = 0.2;
-
-/// Cuts a line a little inside the contacts at its ends; none where it does not reach one of them.
-pub(super) fn cut(bits: Vec<Bit>, hidden_mm: f64, (from, to): (&Area, &Area)) -> Option<Vec<Bit>> {
-    let steps: Vec<usize> = (0..bits.len()).filter(|&at| matches!(bits[at].part, Part::Step(_))).collect();
-    let middle = *steps.get(steps.len() / 2)?;
-    let (early, late) = bits[middle].split(0.5);
-    let backward: Vec<Bit> =
-        std::iter::once(early).chain(bits[..middle].iter().rev().copied()).map(Bit::backward).collect();
-    let forward: Vec<Bit> = std::iter::once(late).chain(bits[middle + 1..].iter().copied()).collect();
-    let back = ended(&backward, hidden_mm, from)?;
-    let on = ended(&forward, hidden_mm, to)?;
-    let mut whole: Vec<Bit> = back.into_iter().rev().map(Bit::backward).collect();
-    let joined = whole.pop()?;
-    let first = on.first()?;
-    match joined.bend.or(first.bend) {
-        None => whole.push(Bit { to: first.to, ..joined }),
-        Some(_) => whole.extend([joined, *first]),
-    }
-    whole.extend(on.into_iter().skip(1));
-    Some(whole)
+fn chords(bits: &[Bit]) -> Vec<Chord> {
+    let of_bit = |(number, bit): (usize, &Bit)| {
+        let all = bit.straightened();
+        let step = 1.0 / all.len() as f64;
+        let each = all.into_iter().enumerate();
+        each.map(move |(at, ends)| Chord { ends, bit: number, from: at as f64 * step, step }).collect::<Vec<_>>()
+    };
+    bits.iter().enumerate().flat_map(of_bit).collect()
 }
 
-/// The line up to a little beyond where it first comes inside, but never out again.
-fn ended(bits: &[Bit], hidden_mm: f64, contact: &Area) -> Option<Vec<Bit>> {
-    let mut kept: Vec<Bit> = Vec::new();
-    let mut left_mm = None;
-    for bit in bits {
-        let span_mm = length(sub(bit.to, bit.from)).max(1e-12);
-        let start = if left_mm.is_some() { Some(0.0) } else { contact.entry(bit) };
-        let Some(start) = start else {
-            kept.push(*bit);
-            continue;
-        };
-        let wanted_mm: f64 = left_mm.unwrap_or(hidden_mm);
-        let end = start + wanted_mm / span_mm;
-        let exit = contact.exit(bit, start);
-        if end <= 1.0 || exit < 1.0 {
-            kept.push(bit.split(end.min((start + exit) / 2.0)).0);
-            return Some(kept);
+/// Follows the bits from a sound beginning and goes over to a later bit where it is crossed first.
+fn unlooped(bits: &[Bit]) -> Inset {
+    let chords = chords(bits);
+    let mut inset = Inset { bits: Vec::new(), skips: Vec::new() };
+    let (mut at, mut from) = (0, 0.0);
+    while at < bits.len() {
+        let (done, left) = (from, bits[at].split(from).1);
+        match first_crossing(&chords, at, from) {
+            Some((t, next, s)) => {
+                let share = ((t - done) / (1.0 - done)).clamp(0.0, 1.0);
+                push(&mut inset.bits, left.split(share).0);
+                let passed: f64 = bits[at + 1..next].iter().map(span).sum();
+                if passed > 0.0 {
+                    inset.skips.push(([bits[at], bits[next]], passed));
+                }
+                (at, from) = (next, s);
+            }
+            None => {
+                push(&mut inset.bits, left);
+                (at, from) = (at + 1, 0.0);
+            }
         }
-        left_mm = Some(wanted_mm - (1.0 - start) * span_mm);
-        kept.push(*bit);
     }
-    left_mm.map(|_| kept)
+    inset
 }
 
-impl Area {
-    /// Share of the way at which a bit first comes inside.
-    fn entry(&self, bit: &Bit) -> Option<f64> {
-        let changes = self.changes(bit);
-        changes.windows(2).find(|pair| self.holds(bit.at((pair[0] + pair[1]) / 2.0))).map(|pair| pair[0])
-    }
+/// Length of a bit as far as it follows its border: arcs round a corner follow nothing.
+fn span(bit: &Bit) -> f64 {
+    if bit.bend.is_none() { bit.length() } else { 0.0 }
+}
 
-    /// Share of the way at which a bit that is inside at `start` goes out; 1 when it does not.
-    fn exit(&self, bit: &Bit, start: f64) -> f64 {
-        let changes = self.changes(bit);
-        let outside = |pair: &&[f64]| pair[0] >= start && !self.holds(bit.at((pair[0] + pair[1]) / 2.0));
-        changes.windows(2).find(outside).map_or(1.0, |pair| pair[0])
+/// Adds a bit that begins where the one before ended; a gap that nothing crosses is bridged straight.
+fn push(bits: &mut Vec<Bit>, bit: Bit) {
+    let Some(last) = bits.last() else { return bits.push(bit) };
+    let gap = length(sub(bit.from, last.to));
+    if gap > 1e-3 {
+        let bridge = Bit { from: last.to, to: bit.from, bend: None, ..*last };
+        bits.push(bridge);
+        bits.push(bit);
+    } else if bit.length() > 1e-9 {
+        let from = last.to;
+        bits.push(Bit { from, ..bit });
     }
+}
 
-    /// Shares of the way at which a bit meets the outlines, from 0 to 1.
-    fn changes(&self, bit: &Bit) -> Vec<f64> {
-        let chords = bit.straightened();
-        let count = chords.len() as f64;
-        let met = chords.iter().enumerate().flat_map(|(at, chord)| {
-            self.sides().filter_map(move |side| meeting(*chord, side)).map(move |t| (at as f64 + t) / count)
+/// The first crossing of bit `at` beyond a share of it with any later bit: both shares and the number of the other.
+fn first_crossing(chords: &[Chord], at: usize, from: f64) -> Option<(f64, usize, f64)> {
+    let start = chords.partition_point(|chord| chord.bit < at);
+    let end = chords.partition_point(|chord| chord.bit <= at);
+    for chord in chords[start..end].iter().filter(|chord| chord.from + chord.step > from) {
+        let frame = bounds(chord.ends);
+        let later = chords[end..].iter().filter(|other| overlap(frame, bounds(other.ends)));
+        let met = later.filter_map(|other| {
+            let (t, s) = meeting(chord.ends, other.ends)?;
+            let (t, s) = (chord.from + t * chord.step, other.from + s * other.step);
+            let joined = other.bit == at + 1 && t > 1.0 - 1e-7 && s < 1e-7;
+            (t > from + 1e-9 && !joined).then_some((t, other.bit, s))
         });
-        let mut changes: Vec<f64> = met.chain([0.0, 1.0]).collect();
-        changes.sort_by(f64::total_cmp);
-        changes.dedup_by(|late, early| *late - *early < 1e-9);
-        changes
+        let first = met.reduce(|best, next| if next.0 < best.0 - 1e-9 { next } else { best });
+        if first.is_some() {
+            return first;
+        }
     }
+    None
 }
 
-/// Share of the way along the first stretch at which it crosses the second.
-fn meeting((a, b): (At, At), (c, d): (At, At)) -> Option<f64> {
-    let turn = cross(sub(b, a), sub(d, c));
-    let t = cross(sub(c, a), sub(d, c)) / turn;
-    let s = cross(sub(c, a), sub(b, a)) / turn;
-    (turn != 0.0 && (0.0..=1.0).contains(&t) && (0.0..=1.0).contains(&s)).then_some(t)
+type Box4 = [f64; 4];
+
+fn bounds((a, b): (At, At)) -> Box4 {
+    [a.0.min(b.0), a.1.min(b.1), a.0.max(b.0), a.1.max(b.1)]
+}
+
+fn overlap(a: Box4, b: Box4) -> bool {
+    a[0] <= b[2] && b[0] <= a[2] && a[1] <= b[3] && b[1] <= a[3]
+}
+
+/// Whether a closed line turns in the sense of its border.
+pub(super) fn keeps_sense(border: &Border, bits: &[Bit]) -> bool {
+    let area = |points: &mut dyn Iterator<Item = (At, At)>| points.map(|(a, b)| cross(a, b)).sum::<f64>();
+    let own = area(&mut border.edges.iter().map(|edge| (edge.from, edge.to)));
+    let line = area(&mut bits.iter().map(|bit| (bit.from, bit.to)));
+    own * line > 0.0
 }

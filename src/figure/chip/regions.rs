@@ -18,7 +18,7 @@ impl Placing<'_> {
             if !matches!(label, FaceLabel::Mesa(_)) {
                 continue;
             }
-            let area = Area::of(self.sketch.drawing.layout, self.sketch.plane, |at, _| at == FaceIdx(face));
+            let area = Area::of(self.sketch.drawing.layout, self.sketch.chains, |at, _| at == FaceIdx(face));
             let sizes = [style::FILLING_PT, 8.0, style::SMALL_PT];
             let wordings = sizes.map(|size_pt| Wording::new(number(filling), Face::Bold, size_pt, style::DARK));
             let found = wordings.iter().find_map(|text| Some((text, self.roomiest(&area, text)?)));

@@ -40,14 +40,44 @@ pub(super) fn gaps(layout: &Layout, along: Along, coordinates: &[i64], slabs: &[
     let borders = borders(layout);
     let number = |value: i64| coordinates.binary_search(&value).unwrap_or(0);
     let mut found = Vec::new();
+    let mut below: Vec<Between> = Vec::new();
     for slab in slabs.windows(2) {
         let crossings = crossings(&borders, along, (slab[0], slab[1]));
-        let pairs = crossings.windows(2);
-        found.extend(pairs.map(|pair| (number(pair[0].high), number(pair[1].low), gap(layout, along, pair))));
+        let here: Vec<Between> = crossings.windows(2).map(|pair| between(layout, along, pair)).collect();
+        let necks: Vec<Between> =
+            below.iter().flat_map(|gap| here.iter().filter_map(move |other| neck(gap, other))).collect();
+        found.extend(
+            here.iter().chain(&necks).map(|between| (number(between.ends.0), number(between.ends.1), between.gap)),
+        );
+        below = here;
     }
     found.sort_unstable();
     found.dedup();
     found
+}
+
+/// A gap with the coordinates between which it lies, where its borders do not lean.
+#[derive(Clone, Copy)]
+struct Between {
+    ends: (i64, i64),
+    upright: bool,
+    gap: Gap,
+}
+
+fn between(layout: &Layout, along: Along, pair: &[Crossing]) -> Between {
+    let upright = pair.iter().all(|crossing| crossing.low == crossing.high);
+    Between { ends: (pair[0].high, pair[1].low), upright, gap: gap(layout, along, pair) }
+}
+
+/// The neck between two gaps of one face in neighbouring slabs, bounded by one border of each.
+fn neck(below: &Between, above: &Between) -> Option<Between> {
+    let is_neck = below.gap.face == above.gap.face && below.upright && above.upright;
+    let (left, right) = (below.ends.0.max(above.ends.0), below.ends.1.min(above.ends.1));
+    let of = |at: usize, from_below: bool| if from_below { below.gap.sides[at] } else { above.gap.sides[at] };
+    let (left_below, right_below) = (left == below.ends.0, right == below.ends.1);
+    let leans = below.ends.0 != above.ends.0 && below.ends.1 != above.ends.1 && left_below != right_below;
+    let gap = Gap { sides: [of(0, left_below), of(1, right_below)], ..below.gap };
+    (is_neck && leans && left < right).then_some(Between { ends: (left, right), upright: true, gap })
 }
 
 struct Border {

@@ -3,8 +3,8 @@
 use crate::figure::chip::ChipDrawing;
 use crate::figure::chip::OverlayLook;
 use crate::figure::chip::area::Area;
+use crate::figure::chip::chains::Chains;
 use crate::figure::chip::stretch::Frame;
-use crate::figure::chip::stretch::Plane;
 use crate::figure::chip::style;
 use crate::figure::chip::vector::add;
 use crate::figure::chip::vector::between;
@@ -25,8 +25,8 @@ const OVERHANG_MM: f64 = 2.4;
 const HATCH_MM: f64 = 3.0;
 
 /// The mesa, the overlays on it and the rim.
-pub(super) fn under(drawing: &ChipDrawing<'_>, plane: &Plane, overlays: &[Area]) -> Vec<Mark> {
-    let mesa = Area::of(drawing.layout, plane, |_, label| matches!(label, FaceLabel::Mesa(_)));
+pub(super) fn under(drawing: &ChipDrawing<'_>, chains: &Chains, overlays: &[Area]) -> Vec<Mark> {
+    let mesa = Area::of(drawing.layout, chains, |_, label| matches!(label, FaceLabel::Mesa(_)));
     let mut marks = vec![shape(&mesa, None, Some(style::MESA))];
     for (overlay, area) in drawing.names.overlays.iter().zip(overlays) {
         let (colour, hatch) = match overlay.look {
@@ -42,21 +42,21 @@ pub(super) fn under(drawing: &ChipDrawing<'_>, plane: &Plane, overlays: &[Area])
 }
 
 /// The areas of gates and steps; a gate across the bar reaches beyond the mesa, a step does not.
-pub(super) fn overlays(drawing: &ChipDrawing<'_>, plane: &Plane) -> Vec<Area> {
+pub(super) fn overlays(drawing: &ChipDrawing<'_>, chains: &Chains) -> Vec<Area> {
     let indices = drawing.names.overlays.iter().enumerate();
     indices
         .map(|(index, overlay)| match overlay.look {
-            OverlayLook::GateAcross => overhanging(&covered(drawing, plane, index)),
-            OverlayLook::Gate | OverlayLook::Step => covered(drawing, plane, index),
+            OverlayLook::GateAcross => overhanging(&covered(drawing, chains, index)),
+            OverlayLook::Gate | OverlayLook::Step => covered(drawing, chains, index),
         })
         .collect()
 }
 
 /// The part of the mesa under an overlay.
-fn covered(drawing: &ChipDrawing<'_>, plane: &Plane, overlay: usize) -> Area {
+fn covered(drawing: &ChipDrawing<'_>, chains: &Chains, overlay: usize) -> Area {
     Area::of(
         drawing.layout,
-        plane,
+        chains,
         |_, label| matches!(label, FaceLabel::Mesa(cover) if cover.iter().any(|under| under.0 == overlay)),
     )
 }
@@ -136,6 +136,13 @@ pub(super) fn orientation_mark(frame: Frame) -> Mark {
     let moves =
         vec![Segment::Move((left, top)), Segment::Line((left, bottom)), Segment::Line((right, bottom)), Segment::Close];
     path(moves, Some(style::pen(style::GREY, 0.2)), None)
+}
+
+/// A line of a length with short strokes at its ends.
+pub(super) fn scale_bar((x, y): At, mm: f64) -> Mark {
+    let ends = [x, x + mm].into_iter().flat_map(|x| [Segment::Move((x, y - 0.7)), Segment::Line((x, y + 0.7))]);
+    let moves = [Segment::Move((x, y)), Segment::Line((x + mm, y))].into_iter().chain(ends);
+    path(moves.collect(), Some(style::pen(style::GREY, 0.25)), None)
 }
 
 /// Four cubic curves; their handles are 4/3 (√2 − 1) of the radius.

@@ -4,7 +4,7 @@
 use std::collections::BTreeMap;
 
 use crate::figure::chip::arrows::runs;
-use crate::figure::chip::courses::region_on_right;
+use crate::figure::chip::courses::region_of;
 use crate::figure::chip::labels::LACK_OF_SHARE;
 use crate::figure::chip::labels::Placing;
 use crate::figure::chip::strokes::Reach;
@@ -78,11 +78,7 @@ fn counts<'a>(reaches: &'a [Reach<'a>], placing: &Placing<'_>) -> Vec<(String, V
     let mut groups: BTreeMap<(BandIdx, Option<FaceIdx>), Vec<&Reach<'a>>> = BTreeMap::new();
     for reach in reaches.iter().filter(|reach| reach.lane.weight > 1.0) {
         let course = &drawing.channels.courses[reach.lane.course];
-        let on_right = region_on_right(drawing.channels.bands[course.band.0].carrier, drawing.polarity);
-        let region = course.steps.first().map(|step| {
-            let piece = drawing.layout.topology.pieces[step.piece.0];
-            if on_right == step.forward { piece.right } else { piece.left }
-        });
+        let region = course.steps.first().map(|step| region_of(drawing, course.band, *step));
         groups.entry((course.band, region)).or_default().push(reach);
     }
     let text = |reaches: &Vec<&Reach<'_>>| format!("×{}", reaches.first().map_or(1.0, |reach| reach.lane.weight));

@@ -6,6 +6,7 @@
 use crate::figure::chip::demand::Demand;
 use crate::figure::chip::demand::Needs;
 use crate::figure::scene::At;
+use crate::layout::Layout;
 use crate::layout::Point;
 
 /// A box in mm.
@@ -25,6 +26,8 @@ const TALLEST: f64 = 1.9;
 pub(super) struct Plane {
     x: Axis,
     y: Axis,
+    /// The scale, where it is the same everywhere.
+    pub(super) mm_per_nm: Option<f64>,
 }
 
 impl Plane {
@@ -40,7 +43,23 @@ impl Plane {
         Some(Self {
             x: Axis::new(&needs[0].coordinates, x.positions(across).into_iter().map(|mm| frame.left + mm)),
             y: Axis::new(&needs[1].coordinates, y.positions(up).into_iter().map(|mm| frame.top + height - mm)),
+            mm_per_nm: None,
         })
+    }
+
+    /// One scale for both axes, as large as a frame allows, centred along x and at the top along y.
+    pub(super) fn to_scale(layout: &Layout, frame: Frame) -> Option<Self> {
+        let ends = |of: fn(&Point) -> i64| {
+            let values = || layout.positions.pieces.iter().flatten().map(of);
+            Some((values().min()?, values().max()?))
+        };
+        let ((left, right), (bottom, top)) = (ends(|point| point.0)?, ends(|point| point.1)?);
+        let (wide, high) = ((right - left) as f64, (top - bottom) as f64);
+        let scale = ((frame.right - frame.left) / wide).min((frame.bottom - frame.top) / high);
+        let start = (frame.left + frame.right - scale * wide) / 2.0;
+        let x = Axis::new(&[left, right], [start, start + scale * wide].into_iter());
+        let y = Axis::new(&[bottom, top], [frame.top + scale * high, frame.top].into_iter());
+        (scale.is_finite() && scale > 0.0).then_some(Self { x, y, mm_per_nm: Some(scale) })
     }
 
     /// Where a point of the chip lies on the drawing.

@@ -4,12 +4,14 @@ use std::collections::BTreeMap;
 use std::collections::BTreeSet;
 
 use crate::figure::chip::ChipDrawing;
+use crate::figure::chip::bit::Bit;
 use crate::figure::chip::border::inset_meeting;
+use crate::figure::chip::chains::Chains;
 use crate::figure::chip::courses::Part;
-use crate::figure::chip::courses::region_on_right;
+use crate::figure::chip::courses::Walked;
+use crate::figure::chip::courses::region_side;
+use crate::figure::chip::fit::WIDEST_PITCH_MM;
 use crate::figure::chip::lanes::Lane;
-use crate::figure::chip::offset::Bit;
-use crate::figure::chip::stretch::Plane;
 use crate::figure::chip::style;
 use crate::figure::chip::vector::add;
 use crate::figure::chip::vector::between;
@@ -37,6 +39,20 @@ pub(super) struct Reach<'a> {
     pub potential: Option<&'a Number>,
     /// The bundle in which channels mix here.
     pub mixing: Option<BundleIdx>,
+    /// Pitch of the nest here, in mm; pens and arrows follow it.
+    pub pitch_mm: f64,
+}
+
+/// Pitches are drawn in steps of this factor, so that a line that narrows keeps its pen for a while.
+const PEN_STEP: f64 = 0.86;
+
+/// The nearest lower step of a pitch.
+fn stepped(pitch_mm: f64) -> f64 {
+    let mut step = WIDEST_PITCH_MM;
+    while step > pitch_mm + 1e-6 && step > 0.003 {
+        step *= PEN_STEP;
+    }
+    step
 }
 
 /// The lines cut into stretches. Neighbouring stretches of a line share their end point exactly.
@@ -53,9 +69,13 @@ pub(super) fn reaches<'a>(
             let potential = bundle.and_then(|bundle| drawing.potential(bundle));
             let mixing = bundle.filter(|bundle| mixing.contains(bundle));
             let goes_on = all.len() > first;
-            match all.last_mut().filter(|held| goes_on && held.potential == potential && held.mixing == mixing) {
+            let pitch_mm = stepped(bit.pitch_mm);
+            let is_same = |held: &&mut Reach<'_>| {
+                goes_on && held.potential == potential && held.mixing == mixing && held.pitch_mm == pitch_mm
+            };
+            match all.last_mut().filter(is_same) {
                 Some(held) => held.bits.push(*bit),
-                None => all.push(Reach { lane, bits: vec![*bit], potential, mixing }),
+                None => all.push(Reach { lane, bits: vec![*bit], potential, mixing, pitch_mm }),
             }
         }
     }
@@ -125,10 +145,10 @@ fn cut_in_half(run: &[Bit]) -> Vec<(Bit, Half)> {
 }
 
 /// The mark of a stretch.
-pub(super) fn stroke(reach: &Reach<'_>, pitch_mm: f64) -> Mark {
+pub(super) fn stroke(reach: &Reach<'_>) -> Mark {
     Mark::Path(PathMark {
         segments: segments(&reach.bits),
-        stroke: Some(style::channel_pen(reach.potential, pitch_mm)),
+        stroke: Some(style::channel_pen(reach.potential, reach.pitch_mm)),
         fill: None,
         role: Role::Channel { weight: reach.lane.weight },
     })
@@ -145,39 +165,54 @@ fn segments(bits: &[Bit]) -> Vec<Segment> {
 
 /// The soft areas in which channels mix: ribbons of the lines of one bundle, which touch, and where lines run on both
 /// sides of a border the strip between them.
-pub(super) fn mixing_areas(
-    drawing: &ChipDrawing<'_>,
-    plane: &Plane,
-    reaches: &[Reach<'_>],
-    pitch_mm: f64,
-) -> Vec<Mark> {
-    let mut bundles: BTreeMap<BundleIdx, Vec<Segment>> = BTreeMap::new();
+pub(super) fn mixing_areas(drawing: &ChipDrawing<'_>, chains: &Chains, reaches: &[Reach<'_>]) -> Vec<Mark> {
+    let mut bundles: BTreeMap<BundleIdx, [Vec<Segment>; 2]> = BTreeMap::new();
+    let mut lay = |bundle: BundleIdx, line: &[At], half_mm: f64| {
+        let [rim, area] = bundles.entry(bundle).or_default();
+        rim.extend(ribbon(line.iter().copied(), half_mm + MIXING_RIM_MM));
+        area.extend(ribbon(line.iter().copied(), half_mm));
+    };
     for reach in reaches {
         let Some(bundle) = reach.mixing else { continue };
-        let points: Vec<At> = reach.bits.iter().flat_map(Bit::straightened).map(|(from, _)| from).collect();
-        let end = reach.bits.last().map(|bit| bit.to);
-        bundles.entry(bundle).or_default().extend(ribbon(points.into_iter().chain(end), pitch_mm * RIBBON));
+        let mut points: Vec<At> = reach.bits.iter().flat_map(Bit::straightened).map(|(from, _)| from).collect();
+        points.extend(reach.bits.last().map(|bit| bit.to));
+        lay(bundle, &points, reach.pitch_mm / PEN_STEP * RIBBON);
     }
-    for (bundle, segments) in &mut bundles {
-        for piece in two_sided(drawing, *bundle) {
-            let chain = plane.chain(&drawing.layout.positions.pieces[piece.0]);
-            segments.extend(ribbon(chain.into_iter(), pitch_mm));
+    let drawn: BTreeSet<BundleIdx> = reaches.iter().filter_map(|reach| reach.mixing).collect();
+    for bundle in drawn {
+        for piece in two_sided(drawing, bundle) {
+            lay(bundle, chains.of(piece), pitch_beside(reaches, drawing, piece));
         }
     }
-    let mark =
-        |segments| Mark::Path(PathMark { segments, stroke: None, fill: Some(style::MIXING), role: Role::MixingBand });
-    bundles.into_values().map(mark).collect()
+    let mark = |segments, colour, role| Mark::Path(PathMark { segments, stroke: None, fill: Some(colour), role });
+    let (rims, areas): (Vec<_>, Vec<_>) = bundles.into_values().map(|[rim, area]| (rim, area)).unzip();
+    let rims = rims.into_iter().map(|rim| mark(rim, style::MIXING_RIM, Role::Scenery));
+    rims.chain(areas.into_iter().map(|area| mark(area, style::MIXING, Role::MixingBand))).collect()
 }
+
+/// Width of the darker rim around an area in which channels mix, in mm.
+const MIXING_RIM_MM: f64 = 0.16;
 
 /// Pieces along which channels of one bundle have their regions on different sides.
 fn two_sided(drawing: &ChipDrawing<'_>, bundle: BundleIdx) -> BTreeSet<PieceIdx> {
     let mut sides: BTreeSet<(PieceIdx, bool)> = BTreeSet::new();
     for course in &drawing.channels.courses {
-        let on_right = region_on_right(drawing.channels.bands[course.band.0].carrier, drawing.polarity);
         let own = course.steps.iter().filter(|step| step.bundle == bundle);
-        sides.extend(own.map(|step| (step.piece, on_right == step.forward)));
+        sides.extend(own.map(|step| {
+            let walked = Walked { piece: step.piece, forward: step.forward, part: Part::Before };
+            (step.piece, region_side(drawing, course.band, walked).on_right)
+        }));
     }
     sides.iter().filter(|(piece, right)| *right && sides.contains(&(*piece, false))).map(|(piece, _)| *piece).collect()
+}
+
+/// The widest pitch of lines along a piece.
+fn pitch_beside(reaches: &[Reach<'_>], drawing: &ChipDrawing<'_>, piece: PieceIdx) -> f64 {
+    let beside = |reach: &&Reach<'_>| {
+        let steps = &drawing.channels.courses[reach.lane.course].steps;
+        reach.bits.iter().any(|bit| matches!(bit.part, Part::Step(at) if steps[at].piece == piece))
+    };
+    reaches.iter().filter(beside).map(|reach| reach.pitch_mm / PEN_STEP).fold(0.0, f64::max)
 }
 
 /// Half width of a ribbon in pitches: a little over one half, so that ribbons side by side overlap.

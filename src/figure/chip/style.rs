@@ -22,6 +22,8 @@ pub(super) const HATCH: Colour = Colour(172, 174, 164);
 pub(super) const RIM: Colour = Colour(150, 150, 150);
 /// Area in which channels mix.
 pub(super) const MIXING: Colour = Colour(247, 226, 168);
+/// Its rim, dark enough for a grey printer.
+pub(super) const MIXING_RIM: Colour = Colour(176, 134, 44);
 /// Contacts and filling factors.
 pub(super) const DARK: Colour = Colour(51, 51, 51);
 /// Names inside contacts.
