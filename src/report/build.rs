@@ -70,6 +70,7 @@ struct TableFields {
     formless: bool,
     /// Path lengths enter at this point.
     lengths: bool,
+    wires: bool,
     /// Edge modes stand in place of fillings.
     modes: bool,
 }
@@ -87,9 +88,10 @@ fn point_report(
     let alone = alone::rules(sources.device, point);
     let all = point.toward.expected.iter().chain(&point.away.expected).chain(measured.iter().map(|row| &row.expected));
     let circuit = all.into_iter().any(|expected| expected.shown_ohm != expected.ohm);
-    let lengths = point.toward.conductance.exact().is_none();
+    let wires = point.toward.conductance.links().iter().any(|link| link.resistance > 0.0);
+    let lengths = point.toward.conductance.exact().is_none() && !wires;
     let modes = point.point.modes.is_some();
-    let fields = TableFields { circuit, lengths, modes, ..table_fields(&rows) };
+    let fields = TableFields { circuit, lengths, wires, modes, ..table_fields(&rows) };
     let charts = if fields.measured { charted::ranges(rows.len()) } else { Vec::new() };
     let mut notes = texts.lines("table.txt", &fields)?.into_iter();
     Ok(PointReport {
@@ -123,6 +125,7 @@ fn table_fields(rows: &[TableRow]) -> TableFields {
         repeated: rows.windows(2).any(|pair| pair[0].name == pair[1].name),
         formless: rows.iter().any(is_formless),
         lengths: false,
+        wires: false,
         modes: false,
     }
 }

@@ -292,6 +292,7 @@ fn a_sheet_shows_all_devices_and_wires() {
         assert!(page.matches(&format!(">{contact}<")).count() >= 2, "{contact} is not in both drawings");
     }
     assert!(page.contains("Wires: A:5–B:1, A:6–B:2 each 1.5 Ω."));
+    assert!(page.contains("No closed form: the resistance of wires is in the reading"));
     let inputs: Vec<&Value> = record["inputs"].as_array().unwrap().iter().map(|input| &input["name"]).collect();
     assert_eq!(inputs, ["device.toml", "bar.toml"]);
     assert!(!run(&folder, "verify out/bench_expected_r1.pdf").answer().is_empty());
