@@ -96,6 +96,11 @@ impl Device {
         self.overlay(name, OverlayShape::Across { from: um(from_um), to: um(to_um) })
     }
 
+    /// Adds a gate across the mesa, from and to in nm.
+    pub(crate) fn strip(self, name: &str, from: Nanometres, to: Nanometres) -> Self {
+        self.overlay(name, OverlayShape::Across { from, to })
+    }
+
     /// Adds a gate of any outline, in nm.
     pub(crate) fn gate_outline(self, name: &str, corners: &[Point]) -> Self {
         let corners = corners.iter().map(|(x, y)| (Nanometres(*x), Nanometres(*y))).collect();
@@ -140,6 +145,6 @@ pub(crate) fn um(um: i64) -> Nanometres {
 }
 
 /// A place that differs from others by its start.
-fn place(start: usize) -> Place {
+pub(crate) fn place(start: usize) -> Place {
     Place { source: Source::new("device.toml", " ".repeat(400)), start, end: start + 1 }
 }

@@ -67,6 +67,7 @@ fn near_misses(drawn: &Drawn, merged: &Subdivision) -> Vec<Diagnostic> {
     for (n, edge) in merged.edges.iter().enumerate() {
         let first = vertices.partition_point(|cell| cell.0 < edge.a.0 - 1);
         let beside = (first..vertices.len()).take_while(|v| vertices[*v].0 <= edge.b.0 + 1);
+        let beside = beside.filter(|vertex| !is_beside_made_corner(drawn, edge, vertices[*vertex]));
         for vertex in beside.filter(|vertex| near(edge, vertices[*vertex]) && shares_mesa(merged, n, *vertex)) {
             let (one, other) = (foremost(&merged.edges[n]), foremost_at(merged, vertex));
             found.entry((one.max(other), one.min(other))).or_insert(vertices[vertex]);
@@ -102,6 +103,12 @@ fn near(edge: &Edge, p: Cell) -> bool {
     }
     // across² < 4·square, without the square that might not fit.
     cross(along, offset).abs() <= (4 * square - 1).isqrt()
+}
+
+/// Whether a point is near an edge only because that ends there in a corner that nobody wrote, as circles have many.
+fn is_beside_made_corner(drawn: &Drawn, edge: &Edge, p: Cell) -> bool {
+    let close = |end: Cell| dot(step(end, p), step(end, p)) < 4 && drawn.outlines.made.contains(&end);
+    close(edge.a) || close(edge.b)
 }
 
 /// Whether the face between an edge and a vertex is a piece of mesa that both border.

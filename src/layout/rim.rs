@@ -80,11 +80,23 @@ impl Rim {
         Foot { distance_squared: dot(away, away), position, point: foot }
     }
 
-    /// The stretch of this width in nm with its middle at a position; none where it would take the whole rim.
+    /// The stretch of this width in nm with its middle at a position; none where it would take the whole rim. An end
+    /// nearer than two pixels to a corner is that corner: no side of the rim is made shorter than that.
     pub(super) fn reach(&self, middle: i128, width: i64) -> Option<Reach> {
         let width = PM * i128::from(width);
-        let low = (middle - width / 2).rem_euclid(self.length());
-        (width < self.length()).then_some(Reach { low, high: low + width })
+        let (low, high) = (middle - width / 2, middle - width / 2 + width);
+        let (low, high) = (low + self.to_corner(low), high + self.to_corner(high));
+        let turns = low.div_euclid(self.length()) * self.length();
+        (width < self.length()).then_some(Reach { low: low - turns, high: high - turns })
+    }
+
+    /// How far the nearest corner lies ahead, or behind with a minus; 0 where it is two pixels away or farther.
+    fn to_corner(&self, position: i128) -> i128 {
+        let position = position.rem_euclid(self.length());
+        let next = self.positions.partition_point(|corner| *corner < position);
+        let beside = self.positions[next.saturating_sub(1)..].iter().take(2).map(|corner| corner - position);
+        let near = |away: &i128| away.abs() < 2 * PM * i128::from(self.grid.snap);
+        beside.filter(near).min_by_key(|away| away.abs()).unwrap_or(0)
     }
 
     /// The pixels of a stretch: both ends, and the corners of the rim between them.
@@ -177,6 +189,8 @@ mod tests {
         let past = rim.reach(0, 10_000).unwrap();
         assert_eq!(rim.chain(past), [(-300, 400), (0, 0), (400, 300)]);
         assert_eq!(rim.reach(0, 120_000), None);
+        let nearly = rim.reach(25_010 * PM, 10_000).unwrap();
+        assert_eq!(rim.chain(nearly), [(1_601, 1_201), (2_400, 1_800)]);
         assert_eq!(rim.neighbours(0), ((-1_800, 2_400), (2_400, 1_800)));
         assert_eq!(rim.with_corners_at(&[115_000 * PM, 125_000 * PM]).len(), 6);
     }

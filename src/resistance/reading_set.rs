@@ -11,7 +11,14 @@ use crate::resistance::Reading;
 ///
 /// On a bench the current runs from the first post to the last, or without posts from where it enters the first device
 /// to where it leaves the last; the two-terminal reading, then the usual pairs of every device.
+///
+/// Where contacts of one device lie on several rims, every rim has its own current and pairs, and the two-terminal reading
+/// from each rim to the next is added.
 pub fn standard_readings(network: &Network) -> Vec<Reading> {
+    let rims = rim_order(network);
+    if network.parts.is_empty() && rims.len() > 1 && rims.iter().any(|rim| rim.len() > 1) {
+        return rim_by_rim(&rims);
+    }
     let sets: Vec<Vec<[ContactIdx; 2]>> = match network.parts.as_slice() {
         [] => vec![usual_pairs(&around(network))],
         parts => parts.iter().zip(first_contacts(parts)).map(|(part, first)| on_bench(part, first)).collect(),
@@ -26,6 +33,16 @@ pub fn standard_readings(network: &Network) -> Vec<Reading> {
     pairs.retain(|pair| *pair != ends);
     pairs.insert(0, ends);
     pairs.into_iter().map(|voltage| Reading::new(ends, voltage)).collect()
+}
+
+fn rim_by_rim(rims: &[Vec<ContactIdx>]) -> Vec<Reading> {
+    let mut readings = Vec::new();
+    for pairs in rims.iter().filter(|rim| rim.len() > 1).map(|rim| usual_pairs(rim)) {
+        readings.extend(pairs.iter().map(|voltage| Reading::new(pairs[0], *voltage)));
+    }
+    let between = rims.windows(2).map(|pair| [pair[0][0], pair[1][0]]);
+    readings.extend(between.filter(|[one, other]| one != other).map(|pair| Reading::new(pair, pair)));
+    readings
 }
 
 /// The current contacts, then the pairs of probes; none for fewer than two contacts.

@@ -3,6 +3,7 @@
 //! its peak memory is its own (VmHWM of proc(5), in kB; left out where there is none).
 
 mod devices;
+mod shapes;
 mod steps;
 
 use std::fs;
@@ -33,6 +34,7 @@ fn main() -> ExitCode {
     demo(&folder);
     agreeing_bar(&folder);
     thirty_two_contacts(&folder);
+    layouts();
     growth();
     ExitCode::SUCCESS
 }
@@ -114,6 +116,16 @@ fn thirty_two_contacts(folder: &Path) {
         run_once(&folder, &format!("expect device.toml {options}"));
     }
     run_once(&folder, "isolate device.toml G0");
+}
+
+fn layouts() {
+    println!("\n== layouts of many sides");
+    for case in shapes::cases() {
+        let time = least(20, || {
+            std::hint::black_box(edgesheet::layout::layout(&case.device).expect("a layout"));
+        });
+        println!("{}", shapes::line(&case, time));
+    }
 }
 
 /// Time from texts to all standard readings, relative to the smallest case: without mixing, mixing fully (fractions) and

@@ -130,7 +130,8 @@ fn currents_are_conserved_in_every_bundle_and_shares_sum_to_one() {
     });
 }
 
-fn check_bundles(channels: &Wired<Rational>, bar: &RandomBar) {
+/// What flows into every bundle flows out of it.
+pub fn check_bundles(channels: &Wired<Rational>, bar: &impl std::fmt::Debug) {
     let mut leaving = vec![Rational::ZERO; channels.bundles.len()];
     for bundle in &channels.bundles {
         let arriving: Rational = bundle.feeds.iter().map(|(_, weight)| weight.clone()).sum();
