@@ -142,9 +142,15 @@ fn all_readings_are_all_of_them() {
 /// Reversal of the field transposes the matrix (H. B. G. Casimir, Rev. Mod. Phys. 17, 343 (1945)).
 #[test]
 fn rows_and_columns_of_the_conductance_sum_to_zero_exactly() {
-    for demo in
-        ["top-gated-bar", "two-gates-and-step", "bipolar-graphene", "triple-series", "corbino-ring", "antidot-bar"]
-    {
+    for demo in [
+        "top-gated-bar",
+        "two-gates-and-step",
+        "bipolar-graphene",
+        "triple-series",
+        "corbino-ring",
+        "antidot-bar",
+        "cross",
+    ] {
         let answer = run(&with_demo(&format!("sums/{demo}"), demo), "expect device.toml --json").json();
         for pair in points(&answer).chunks(2) {
             let [toward, away] =
