@@ -308,7 +308,7 @@ fn contacts_on_rims_leave_the_mesa_its_area(device: &Device, layout: &Layout) {
     if device.contacts.iter().any(|contact| matches!(contact.shape, ContactShape::Outline(_))) {
         return;
     }
-    let rings = || std::iter::once(outline).chain(cutouts).map(|outline| cells(outline));
+    let rings = || std::iter::once(outline).chain(cutouts).map(cells);
     let areas: Vec<i128> =
         rings().map(|ring| outline::sides(&ring).map(|(a, b)| shoelace(a, b)).sum::<i128>().abs()).collect();
     let expected = areas[0] - areas[1..].iter().sum::<i128>();
