@@ -201,7 +201,7 @@ fn identity(item: &Value) -> String {
 /// What an item of a list is called in words of the sheet.
 fn named(item: &Value, at: usize) -> String {
     let text = |key: &str| item.get(key).and_then(Value::as_str);
-    let side = |sign| if sign == "+" { "field toward you" } else { "field away" };
+    let side = |sign| if sign == "+" { "toward you" } else { "away" };
     let leads = pair(item, "current", "→").zip(pair(item, "voltage", "−"));
     let leads = leads.map(|(current, voltage)| format!("I {current}, V {voltage}"));
     let loops = item.get("contacts").map(|contacts| format!("loop {}", short(contacts)));
@@ -255,7 +255,7 @@ mod tests {
             json!({"points": [{"name": "3 over 1", "polarities": [{"polarity": "+", "readings": [reading]}]}]})
         };
         let found = differences(&record(1.0), &record(2.0), Writer::SameVersion);
-        assert_eq!(found, ["3 over 1, field toward you, I 1→4, V 2−5, ohm: 1.0 | 2.0"]);
+        assert_eq!(found, ["3 over 1, toward you, I 1→4, V 2−5, ohm: 1.0 | 2.0"]);
     }
 
     #[test]

@@ -21,8 +21,8 @@ pub const FORMAT: u32 = 1;
 /// What a stranger reads first.
 const ABOUT: &str = "Everything that a characterisation sheet of a quantum Hall device states. `inputs` holds the files from \
     which it was computed, `points` the numbers: fractions of h/e² as texts, resistances in Ω, the unit in the name of each \
-    key. R_ij,kl = (V_k − V_l)/I with the current in at i and out at j; polarity + is the field toward the reader of the \
-    drawing. `printed` holds the sentences and tables as they stand on the pages. Computing again from `inputs` with \
+    key. R_ij,kl = (V_k − V_l)/I with the current in at i and out at j; polarity + is the field, or a magnetisation that \
+    stands in its place, toward the reader of the drawing. `printed` holds the sentences and tables as they stand on the pages. Computing again from `inputs` with \
     `options` gives the same numbers.";
 
 /// What the reading half of the pages needs and a reader of the record does not: headings, and measures of drawings.

@@ -51,14 +51,17 @@ impl<'a> Table<'a> {
     /// The first of `sets` that fits the text width at the usual size or at the least; else the last.
     pub fn new(rows: &'a [TableRow], words: &'a Words, sets: &[Vec<Column>], left_mm: f64) -> Self {
         let name_mm = rows.iter().map(|row| Style::bold(grid::SMALL_PT).width_mm(&row.name)).fold(0.0, f64::max);
-        let names_above = name_mm > WIDEST_NAME_MM;
-        let candidates = sets.iter().flat_map(|set| [(set, grid::SMALL_PT), (set, grid::LEAST_PT)]);
-        let build = |(set, size_pt): (&Vec<Column>, f64)| {
+        let build = |(names_above, set, size_pt): (bool, &Vec<Column>, f64)| {
             let set = set.iter().filter(|column| !(names_above && **column == Column::Name));
             let columns = set.map(|column| measure(*column, rows, words, size_pt)).collect();
             Self { rows, words, size_pt, columns, names_above, brief: false }
         };
-        let mut tables: Vec<Self> = candidates.map(build).collect();
+        let sizes = |names_above| {
+            sets.iter().flat_map(move |set| [grid::SMALL_PT, grid::LEAST_PT].map(|size| (names_above, set, size)))
+        };
+        // Names give way before numbers come too near to one another.
+        let beside = sizes(false).filter(|_| name_mm <= WIDEST_NAME_MM);
+        let mut tables: Vec<Self> = beside.chain(sizes(true)).map(build).collect();
         let fit =
             tables.iter().position(|table| table.gap_mm() >= LEAST_GAP_MM).unwrap_or(tables.len().saturating_sub(1));
         let mut table = tables.swap_remove(fit);

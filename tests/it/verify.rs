@@ -189,7 +189,7 @@ fn pdf_cases() -> Vec<Case> {
             "a number of the record, sums renewed",
             replaced(pdf, "record.json", number.as_bytes()),
             1,
-            &["3 over 1, field toward you, I 1→4, V 2−3, exact: archived “3/4”, computed again “2/3”"],
+            &["3 over 1, toward you, I 1→4, V 2−3, exact: archived “3/4”, computed again “2/3”"],
         ),
         (
             "a verdict",
