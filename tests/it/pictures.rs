@@ -118,7 +118,7 @@ fn one_reading_can_be_drawn_alone() {
     assert_eq!(ran.code, 0, "{}", ran.err);
     assert!(ran.err.contains("wrote out/") && ran.out.contains("contact 2"), "{}", ran.err);
     let drawn = ["away.png", "away.svg", "toward.png", "toward.svg"];
-    assert_eq!(names(&folder.join("out")), drawn.map(|end| format!("1_point_why_1-4-2-5_field-{end}")));
+    assert_eq!(names(&folder.join("out")), drawn.map(|end| format!("1_point_why_1-4-2-5_{end}")));
     assert_eq!(run(&folder, line).code, 3);
     assert_eq!(run(&folder, &format!("{line} --replace")).code, 0);
     assert_eq!(run(&folder, "expect bar.toml -o out").code, 2);
