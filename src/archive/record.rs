@@ -14,6 +14,7 @@ use crate::quantity::ELEMENTARY_CHARGE;
 use crate::quantity::KLITZING;
 use crate::report::Numbers;
 use crate::report::Report;
+use crate::report::spelled;
 
 /// The number of the record's format. Another number is another format.
 pub const FORMAT: u32 = 1;
@@ -90,7 +91,7 @@ pub fn record(parts: Parts) -> Result<Vec<u8>, Diagnostic> {
     let fault =
         |error: serde_json::Error| Diagnostic::fault("record", format!("the record cannot be written: {error}"));
     let mut printed = serde_json::to_value(parts.report).map_err(fault)?;
-    without_layout(&mut printed);
+    for_people(&mut printed);
     let record = Record {
         format: FORMAT,
         about: ABOUT,
@@ -104,13 +105,15 @@ pub fn record(parts: Parts) -> Result<Vec<u8>, Diagnostic> {
     Ok(text::laid_out(&serde_json::to_value(&record).map_err(fault)?).into_bytes())
 }
 
-fn without_layout(value: &mut Value) {
+/// Without what is layout alone, and with marks spelled.
+fn for_people(value: &mut Value) {
     match value {
         Value::Object(fields) => {
             fields.retain(|key, _| !LAYOUT_ONLY.contains(&key.as_str()));
-            fields.values_mut().for_each(without_layout);
+            fields.values_mut().for_each(for_people);
         }
-        Value::Array(list) => list.iter_mut().for_each(without_layout),
+        Value::Array(list) => list.iter_mut().for_each(for_people),
+        Value::String(text) => *text = spelled(text),
         _ => {}
     }
 }

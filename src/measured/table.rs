@@ -16,6 +16,7 @@ use crate::measured::columns::Header;
 use crate::measured::row::Row;
 use crate::measured::split::Line;
 use crate::measured::split::lines;
+use crate::syntax::is_noncharacter;
 
 /// Largest table in bytes. Readings are typed or logged one by one; what is larger is a sweep.
 const LARGEST: usize = 4_000_000;
@@ -30,6 +31,7 @@ pub fn from_source(source: &Arc<Source>, names: &Names) -> Outcome<Vec<MeasuredR
     if source.text.len() > LARGEST {
         return Err(Faults(vec![too_large(source)]));
     }
+    findings.extend(noncharacter(source));
     let all = lines(source, &mut findings);
     let Some((first, rows)) = all.split_first() else {
         if !findings.has_faults() {
@@ -46,6 +48,14 @@ pub fn from_source(source: &Arc<Source>, names: &Names) -> Outcome<Vec<MeasuredR
     let readings =
         rows.iter().filter_map(|line| reading(Row { header: &header, names, line }, &mut findings)).collect();
     findings.finish(readings)
+}
+
+/// Texts of a sheet carry marks that are such codes.
+fn noncharacter(source: &Arc<Source>) -> Option<Diagnostic> {
+    let (start, sign) = source.text.char_indices().find(|(_, sign)| is_noncharacter(*sign))?;
+    let message = format!("the table holds the code U+{:04X}, which is no character", u32::from(sign));
+    let place = Place { source: Arc::clone(source), start, end: start + sign.len_utf8() };
+    Some(Diagnostic::fault("no-character", message).at(&place).hint("take it out"))
 }
 
 /// The text of a table from its bytes: UTF-8, with or without a byte order mark.

@@ -20,6 +20,7 @@ use crate::quantity::printed::as_given;
 use crate::report::Provenance;
 use crate::report::Sources;
 use crate::report::Texts;
+use crate::report::marks::marked;
 
 /// Rules in use: sign, uncertainty, limit, mixing.
 pub fn rules(sources: &Sources, texts: &Texts) -> Result<Vec<String>, Diagnostic> {
@@ -96,7 +97,7 @@ pub fn program(version: &str, texts: &Texts) -> Result<String, Diagnostic> {
 fn constants() -> String {
     let (now, then) = (printed::decimals(KLITZING.value, 10), printed::decimals(KLITZING_1990.value, 3));
     let Constant { symbol, unit, source, .. } = KLITZING;
-    format!("{symbol} = {now} {unit}: {source}. Not used: {} = {then} {unit} of 1990", KLITZING_1990.symbol)
+    format!("{symbol} = {now} {unit}: {source}. Not used: {} = {then} {unit} of 1990", marked(KLITZING_1990.symbol))
 }
 
 #[derive(Serialize)]

@@ -4,7 +4,7 @@
 //! sheet prints, numbers beside their unrounded values. Sentences come from the parts in `templates/`. Must never contain
 //! the layout of pages.
 //!
-//! Text may carry two marks that a writer turns into type: `_{…}` lowered and `^{…}` raised.
+//! Text may carry marks that a writer turns into type, lowered and raised ([`marked`]); no user can type them.
 
 use serde::Serialize;
 
@@ -22,6 +22,7 @@ mod expect;
 mod file_names;
 mod identity;
 mod instruments;
+mod marks;
 mod mixed;
 mod names;
 mod numbers;
@@ -51,6 +52,11 @@ pub use expect::expected_output;
 pub use expect::state_words;
 pub use file_names::file_stem;
 pub use file_names::next_revision;
+pub use marks::CLOSED;
+pub use marks::LOWERED;
+pub use marks::RAISED;
+pub use marks::marked;
+pub use marks::spelled;
 pub use names::driver;
 pub use numbers::Numbers;
 pub use numbers::numbers;

@@ -7,15 +7,18 @@ use crate::device::Modes;
 use crate::device::OperatingPoint;
 use crate::quantity::Polarity;
 use crate::quantity::printed::as_given;
+use crate::report::marks::CLOSED;
+use crate::report::marks::LOWERED;
+use crate::report::marks::plain;
 use crate::report::printed::filling;
 use crate::resistance::Reading;
 
-/// `R_{14,25}` where every contact's name has one character, else `R(S–D, T1–B2)`: letters run together are ambiguous.
+/// R with 14,25 lowered where every contact's name has one character, else `R(S–D, T1–B2)`: letters run together are ambiguous.
 pub fn reading_name(device: &Device, reading: &Reading) -> String {
     let [i, j] = reading.current.map(|contact| contact_name(device, contact));
     let [k, l] = reading.voltage.map(|contact| contact_name(device, contact));
     if device.contacts.iter().all(|contact| contact.name.chars().count() == 1) {
-        format!("R_{{{i}{j},{k}{l}}}")
+        format!("R{LOWERED}{i}{j},{k}{l}{CLOSED}")
     } else {
         format!("R({i}–{j}, {k}–{l})")
     }
@@ -23,7 +26,7 @@ pub fn reading_name(device: &Device, reading: &Reading) -> String {
 
 /// The same without marks, for a terminal: `R_14,25` or `R(S–D, T1–B2)`.
 pub fn plain_name(device: &Device, reading: &Reading) -> String {
-    reading_name(device, reading).replace(['{', '}'], "")
+    plain(&reading_name(device, reading))
 }
 
 /// The name of a contact; empty for an index that the device has not.
@@ -144,13 +147,13 @@ pub fn field(point: &OperatingPoint) -> Option<String> {
     point.field_t.map(|tesla| format!("{} T", as_given(tesla)))
 }
 
-/// Closed forms in type: `1/ν(TG)` becomes `1/ν_{TG}`.
+/// Closed forms in type: in `1/ν(TG)` the name is lowered.
 pub fn formula(text: &str) -> String {
     let mut shown = String::new();
     let mut rest = text;
     while let Some((before, after)) = rest.split_once("ν(") {
         let Some(end) = closing_bracket(after) else { break };
-        shown.push_str(&format!("{before}ν_{{{}}}", &after[..end]));
+        shown.push_str(&format!("{before}ν{LOWERED}{}{CLOSED}", &after[..end]));
         rest = &after[end + 1..];
     }
     shown + rest
@@ -173,12 +176,13 @@ fn closing_bracket(text: &str) -> Option<usize> {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::report::marks::spelled;
 
     #[test]
     fn closed_forms_are_lowered() {
-        assert_eq!(formula("2/ν(bulk) − 1/ν(TG)"), "2/ν_{bulk} − 1/ν_{TG}");
+        assert_eq!(spelled(&formula("2/ν(bulk) − 1/ν(TG)")), "2/ν_{bulk} − 1/ν_{TG}");
         assert_eq!(formula("1/2"), "1/2");
-        assert_eq!(formula("1/|ν(TG (left))| − 2/ν(bulk)"), "1/|ν_{TG (left)}| − 2/ν_{bulk}");
+        assert_eq!(spelled(&formula("1/|ν(TG (left))| − 2/ν(bulk)")), "1/|ν_{TG (left)}| − 2/ν_{bulk}");
     }
 
     #[test]

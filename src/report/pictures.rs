@@ -13,6 +13,7 @@ use crate::report::Texts;
 use crate::report::closing;
 use crate::report::file_names::legible;
 use crate::report::identity;
+use crate::report::marks::plain;
 use crate::report::names;
 use crate::resistance::Expected;
 
@@ -85,10 +86,10 @@ impl PictureOrigin {
     fn data(&self, title: &str, lines: &[String]) -> PictureData {
         let line = |input: &Input| format!("{} SHA-256 {}", input.name, input.sha256);
         let inputs: Vec<String> = self.inputs.iter().map(line).collect();
-        let lines: Vec<String> = lines.iter().map(|line| unmarked(line)).collect();
+        let lines: Vec<String> = lines.iter().map(|line| plain(line)).collect();
         let lines: Vec<&str> = lines.iter().map(|line| line.trim()).filter(|line| !line.is_empty()).collect();
         PictureData {
-            title: unmarked(&format!("{}, {title}", self.about)),
+            title: plain(&format!("{}, {title}", self.about)),
             description: lines.join("\n"),
             software: self.program.clone(),
             source: inputs.join("\n"),
@@ -111,11 +112,6 @@ pub fn why_picture(
     let name = format!("{place}_{}_why_{}_{polarity}", legible(point), reading.join("-"));
     let title = format!("{point}, {}: why {leads}", names::side(device, solved.polarity));
     PictureWords { name, data: origin.data(&title, &why.sentences) }
-}
-
-/// Text without marks: `R_14,25`, `10^−6`.
-fn unmarked(text: &str) -> String {
-    text.replace("_{", "_").replace("^{", "^").replace('}', "")
 }
 
 fn side(polarity: &str) -> &'static str {

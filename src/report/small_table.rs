@@ -5,6 +5,7 @@ use serde::Serialize;
 
 use crate::diagnostic::Diagnostic;
 use crate::report::Printed;
+use crate::report::marks::marked;
 
 /// A small table as it is printed; numbers with their unrounded values.
 #[derive(Clone, Debug, Default, PartialEq, Serialize)]
@@ -129,7 +130,7 @@ pub struct PartNames {
 impl TableTexts {
     /// The built-in words for channels turned by `driver`: `field`, `magnetisation`. A fault means that the part is no valid TOML or lacks a word.
     pub fn built_in(driver: &str) -> Result<Self, Diagnostic> {
-        toml::from_str(&include_str!("../../templates/tables.toml").replace("{driver}", driver))
+        toml::from_str(&marked(&include_str!("../../templates/tables.toml").replace("{driver}", driver)))
             .map_err(|error| Diagnostic::fault("template", format!("the part “tables.toml” cannot be read: {error}")))
     }
 }

@@ -5,6 +5,7 @@ use tera::Context;
 use tera::Tera;
 
 use crate::diagnostic::Diagnostic;
+use crate::report::marks::marked;
 
 /// The parts of a sheet's text, each replaceable on its own.
 pub struct Texts {
@@ -38,7 +39,8 @@ impl Texts {
     /// template.
     pub fn built_in(driver: &'static str) -> Result<Self, Diagnostic> {
         let mut tera = Tera::default();
-        tera.add_raw_templates(PARTS).map_err(|error| fault("templates", &error))?;
+        tera.add_raw_templates(PARTS.map(|(name, part)| (name, marked(part))))
+            .map_err(|error| fault("templates", &error))?;
         Ok(Self { parts: tera, driver })
     }
 

@@ -5,6 +5,7 @@ use serde::Serialize;
 
 use crate::compare::Judgement;
 use crate::diagnostic::Diagnostic;
+use crate::report::marks::marked;
 
 /// Headings and labels of a sheet.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
@@ -77,7 +78,7 @@ pub struct Words {
 impl Words {
     /// The built-in words for channels turned by `driver`: `field`, `magnetisation`. A fault means that the part is no valid TOML or lacks a word.
     pub fn built_in(driver: &str) -> Result<Self, Diagnostic> {
-        toml::from_str(&include_str!("../../templates/words.toml").replace("{driver}", driver))
+        toml::from_str(&marked(&include_str!("../../templates/words.toml").replace("{driver}", driver)))
             .map_err(|error| Diagnostic::fault("template", format!("the part “words.toml” cannot be read: {error}")))
     }
 

@@ -55,7 +55,7 @@ struct Fields<'a> {
     style: &'static str,
 }
 
-/// Marked text as HTML: `_{…}` and `^{…}` become `<sub>` and `<sup>`, everything else is escaped.
+/// Marked text as HTML: lowered and raised become `<sub>` and `<sup>`, everything else is escaped.
 struct Marked;
 
 impl tera::Filter<String, String> for Marked {
@@ -87,13 +87,14 @@ fn escaped(text: &str) -> String {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::report::marked;
 
     #[test]
     fn marks_become_elements_and_the_rest_is_escaped() {
         assert_eq!(
-            marked_html("R_{14,25} < h/e^{2} & \"x\""),
-            "R<sub>14,25</sub> &lt; h/e<sup>2</sup> &amp; &quot;x&quot;"
+            marked_html(&(marked("R_{14,25} < h/e^{2}") + " & \"x_{y}\"")),
+            "R<sub>14,25</sub> &lt; h/e<sup>2</sup> &amp; &quot;x_{y}&quot;"
         );
-        assert_eq!(marked_html("_{<b>}"), "<sub>&lt;b&gt;</sub>");
+        assert_eq!(marked_html(&marked("_{<b>}")), "<sub>&lt;b&gt;</sub>");
     }
 }

@@ -16,6 +16,7 @@ use crate::report::Strip;
 use crate::report::TableRow;
 use crate::report::VerdictBox;
 use crate::report::Words;
+use crate::report::marked;
 
 /// What a hand-made report is like.
 #[derive(Clone, Copy, Debug)]
@@ -87,7 +88,7 @@ impl Sample {
 
     fn name(self, index: usize) -> String {
         if self.name_letters == 1 {
-            return format!("R_{{14,{}{}}}", index % 6 + 1, (index + 1) % 6 + 1);
+            return marked(&format!("R_{{14,{}{}}}", index % 6 + 1, (index + 1) % 6 + 1));
         }
         let name = |letter: &str| letter.repeat(self.name_letters);
         format!("R({}–{}, {}–{})", name("S"), name("D"), name("w"), name("m"))
@@ -136,7 +137,7 @@ impl Sample {
             heading: "Field toward you".to_string(),
             sense: "electrons run counter-clockwise, holes clockwise".to_string(),
             leads: format!("I {name}→{name}, V {name}−{name}"),
-            value: "= h/e² × (1/ν_{TG}) = 25.8128 kΩ".to_string(),
+            value: marked("= h/e² × (1/ν_{TG}) = 25.8128 kΩ"),
             expected: None,
             remark: "shows TG alone".to_string(),
             shares: vec!["2/3".to_string()],
@@ -149,7 +150,7 @@ impl Sample {
             place: index + 1,
             name: self.name(index),
             label: index.is_multiple_of(3).then(|| format!("diagonal {index}")),
-            formula: self.formulas.then(|| "2/ν_{bulk} − 1/ν_{TG} | −1/ν_{TG}".to_string()),
+            formula: self.formulas.then(|| marked("2/ν_{bulk} − 1/ν_{TG} | −1/ν_{TG}")),
             toward: self.cell(index),
             away: self.cell(index + 1),
         }

@@ -1,6 +1,6 @@
 //! Marked text to runs, and lines of a given width.
 //!
-//! `_{…}` is lowered, `^{…}` raised; everything else stands as it is.
+//! What stands between marks is lowered or raised; everything else, whatever it looks like, stands as it is.
 
 use crate::figure::fonts;
 use crate::figure::fonts::Face;
@@ -10,6 +10,9 @@ use crate::figure::scene::Level;
 use crate::figure::scene::Role;
 use crate::figure::scene::Run;
 use crate::figure::scene::TextMark;
+use crate::report::CLOSED;
+use crate::report::LOWERED;
+use crate::report::RAISED;
 use crate::sheet::grid;
 
 /// How a line of text is set.
@@ -116,15 +119,14 @@ impl Style {
     }
 }
 
-/// The runs of a marked text. A mark that is not closed stands as it is.
+/// The runs of a marked text.
 pub fn runs(marked: &str) -> Vec<Run> {
     let mut runs = Vec::new();
     let mut rest = marked;
-    while let Some((start, level)) = next_mark(rest) {
-        let Some(length) = rest[start + 2..].find('}') else { break };
-        push(&mut runs, &rest[..start], Level::Normal);
-        push(&mut runs, &rest[start + 2..start + 2 + length], level);
-        rest = &rest[start + 3 + length..];
+    while let Some((before, level, (inside, after))) = next_mark(rest) {
+        push(&mut runs, before, Level::Normal);
+        push(&mut runs, inside, level);
+        rest = after;
     }
     push(&mut runs, rest, Level::Normal);
     runs
@@ -140,10 +142,11 @@ pub fn spoken(marked: &str) -> String {
     runs(marked).into_iter().map(|run| fonts::spoken(&run.text, run.level)).collect()
 }
 
-fn next_mark(text: &str) -> Option<(usize, Level)> {
-    let lowered = text.find("_{").map(|start| (start, Level::Sub));
-    let raised = text.find("^{").map(|start| (start, Level::Super));
-    [lowered, raised].into_iter().flatten().min_by_key(|(start, _)| *start)
+/// What stands before the next mark, its level, what it holds and the rest.
+fn next_mark(text: &str) -> Option<(&str, Level, (&str, &str))> {
+    let (before, from_mark) = text.split_at(text.find([LOWERED, RAISED])?);
+    let level = if from_mark.starts_with(LOWERED) { Level::Sub } else { Level::Super };
+    Some((before, level, from_mark.strip_prefix([LOWERED, RAISED])?.split_once(CLOSED)?))
 }
 
 fn push(runs: &mut Vec<Run>, text: &str, level: Level) {
@@ -158,8 +161,8 @@ fn words(marked: &str) -> Vec<&str> {
     let (mut start, mut depth, mut before) = (0, 0_usize, ' ');
     for (index, character) in marked.char_indices() {
         match character {
-            '{' => depth += 1,
-            '}' => depth = depth.saturating_sub(1),
+            LOWERED | RAISED => depth += 1,
+            CLOSED => depth = depth.saturating_sub(1),
             ' ' if depth == 0 && !(before.is_ascii_digit() && begins_with_unit(&marked[index + 1..])) => {
                 words.push(&marked[start..index]);
                 start = index + 1;
@@ -183,42 +186,46 @@ fn begins_with_unit(text: &str) -> bool {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::report::marked;
 
     #[test]
     fn marks_become_levels() {
         let texts: Vec<(String, Level)> =
-            runs("R_{14,25} in h/e^{2} a_{").into_iter().map(|r| (r.text, r.level)).collect();
+            runs(&(marked("R_{14,25} in h/e^{2}") + " a_{b}^{c}")).into_iter().map(|r| (r.text, r.level)).collect();
         let expected = [
             ("R", Level::Normal),
             ("14,25", Level::Sub),
             (" in h/e", Level::Normal),
             ("2", Level::Super),
-            (" a_{", Level::Normal),
+            (" a_{b}^{c}", Level::Normal),
         ];
         assert_eq!(texts, expected.map(|(text, level)| (text.to_string(), level)));
     }
 
     #[test]
     fn levels_are_told_in_plain_text() {
-        assert_eq!(spoken("R_{14,25} = h/e^{2} × 10^{−6}, H_{2}O, ν^{*}"), "R_14,25 = h/e² × 10⁻⁶, H₂O, ν^*");
+        let text = marked("R_{14,25} = h/e^{2} × 10^{−6}, H_{2}O, ν^{*}");
+        assert_eq!(spoken(&text), "R_14,25 = h/e² × 10⁻⁶, H₂O, ν^*");
     }
 
     #[test]
     fn lines_keep_every_character_and_stay_within_their_width() {
         let style = Style::text(8.5);
-        let text =
-            "a rather long sentence with averyveryveryveryverylongwordinside and R_{14,25} ν_{thin side} at its end";
-        let lines = style.lines(text, 22.0);
+        let text = marked(
+            "a rather long sentence with averyveryveryveryverylongwordinside and R_{14,25} ν_{thin side} at its end",
+        );
+        let lines = style.lines(&text, 22.0);
         assert!(lines.iter().all(|line| style.width_mm(line) <= 22.0), "{lines:?}");
         let bare = |text: &str| text.chars().filter(|c| *c != ' ').collect::<String>();
-        assert_eq!(bare(&lines.concat()), bare(text));
+        assert_eq!(bare(&lines.concat()), bare(&text));
         assert!(lines.len() > 4);
     }
 
     #[test]
     fn a_number_stays_with_its_unit() {
         assert_eq!(words("gas at 21 °C, 50 % of 14 readings"), ["gas", "at", "21 °C,", "50 %", "of", "14", "readings"]);
-        assert_eq!(words("ν_{thin side} is 3"), ["ν_{thin side}", "is", "3"]);
+        let (text, name) = (marked("ν_{thin side} is 3"), marked("ν_{thin side}"));
+        assert_eq!(words(&text), [name.as_str(), "is", "3"]);
     }
 
     #[test]

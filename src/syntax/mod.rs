@@ -25,6 +25,7 @@ mod value;
 pub use decimal::exact_decimal;
 pub use decimal::nanometres;
 pub use keys::FileSpec;
+pub use kind::is_noncharacter;
 pub use node::Entry;
 pub use node::Node;
 pub use node::Table;

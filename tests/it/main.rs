@@ -49,6 +49,7 @@ mod start;
 mod surroundings;
 mod tableau;
 mod tidy;
+mod typed;
 mod verify;
 mod why;
 mod world;

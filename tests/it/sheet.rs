@@ -7,6 +7,8 @@ use edgesheet::figure::fonts::Face;
 use edgesheet::figure::scene::Mark;
 use edgesheet::figure::scene::Scene;
 use edgesheet::figure::scene::TextMark;
+use edgesheet::report;
+use edgesheet::report::spelled;
 use edgesheet::sheet;
 use edgesheet::sheet::Paper;
 use edgesheet::sheet::pdf::Bookmark;
@@ -171,7 +173,7 @@ fn flatten<'a>(bookmarks: &'a [Bookmark], flat: &mut Vec<&'a Bookmark>) {
 
 /// A text without its marks.
 fn bare(marked: &str) -> String {
-    marked.replace("_{", "").replace("^{", "").replace('}', "")
+    marked.replace([report::LOWERED, report::RAISED, report::CLOSED], "")
 }
 
 /// What is left of the last page is for remarks: the sign-off stands at its foot.
@@ -212,10 +214,13 @@ fn every_number_of_the_tables_stands_on_the_pages_and_in_the_twin() {
 #[test]
 fn the_demo_says_what_a_tired_person_needs() {
     let report = demo().report;
-    assert_eq!(report.verdict.sentence, "13 of 14 readings agree. One does not: R_{14,36} with the field away.");
+    assert_eq!(
+        spelled(&report.verdict.sentence),
+        "13 of 14 readings agree. One does not: R_{14,36} with the field away."
+    );
     assert_eq!(report.verdict.result, "disagrees");
     let worst = &report.points[0].rows[0];
-    assert_eq!(worst.name, "R_{14,36}");
+    assert_eq!(spelled(&worst.name), "R_{14,36}");
     let text = |number: &Option<edgesheet::report::Printed>| number.as_ref().map(|number| number.text.clone());
     assert_eq!(text(&worst.toward.expected).as_deref(), Some("−8.6043"));
     assert_eq!(text(&worst.away.expected).as_deref(), Some("−25.8128"));

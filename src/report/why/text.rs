@@ -4,6 +4,7 @@ use crate::device::Device;
 use crate::quantity::Polarity;
 use crate::report::ReadingWhy;
 use crate::report::SolvedPoint;
+use crate::report::marks;
 use crate::report::names::plain_name;
 use crate::report::names::side;
 use crate::report::table_text::WIDTH;
@@ -13,14 +14,7 @@ use crate::report::table_text::wrapped;
 
 /// Sentences without marks.
 pub fn plain(sentences: &[String]) -> Vec<String> {
-    sentences.iter().map(|sentence| unmarked(sentence)).collect()
-}
-
-fn unmarked(sentence: &str) -> String {
-    match sentence.split_once("_{").and_then(|(before, rest)| Some((before, rest.split_once('}')?))) {
-        Some((before, (lowered, after))) => format!("{before}_{lowered}{after}"),
-        None => sentence.to_owned(),
-    }
+    sentences.iter().map(|sentence| marks::plain(sentence)).collect()
 }
 
 /// Every explanation: point by point, reading by reading, both polarities of a reading together, sentences numbered.

@@ -4,6 +4,8 @@ mod list;
 mod number;
 mod word;
 
+pub use word::is_noncharacter;
+
 use crate::diagnostic::Diagnostic;
 use crate::number::Rational;
 

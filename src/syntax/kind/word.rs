@@ -15,7 +15,7 @@ const LONGEST_NAME: usize = 60;
 
 pub(super) fn text(key: &str, node: &Node) -> Vec<Diagnostic> {
     match &node.value {
-        Value::Text(_) => Vec::new(),
+        Value::Text(text) => noncharacter(key, text, node).into_iter().collect(),
         Value::Whole(number) | Value::Decimal(number) => {
             vec![wrong_kind(key, "a text", node).hint(format!("put it in quotes: \"{number}\""))]
         }
@@ -31,7 +31,7 @@ pub(super) fn name(key: &str, node: &Node) -> Vec<Diagnostic> {
     } else if name.trim() != name || name.chars().any(char::is_control) {
         fault(format!("`{key}` has blanks at an end, a tab or a line break: {}", quoted(name)), "take them out")
     } else if name.contains(['{', '}']) {
-        // A sheet writes names into texts in which curly brackets mark lowered and raised type.
+        // The record writes names of contacts as `R_{14,25}`, so a name with such brackets could not be told from its neighbours.
         fault(format!("`{key}` has curly brackets: {}", quoted(name)), "take them out, or write round ones")
     } else if name.chars().count() > LONGEST_NAME {
         fault(
@@ -39,8 +39,20 @@ pub(super) fn name(key: &str, node: &Node) -> Vec<Diagnostic> {
             "choose a shorter one; `note` takes long texts",
         )
     } else {
-        Vec::new()
+        text(key, node)
     }
+}
+
+/// Texts of a sheet carry marks that are such codes.
+fn noncharacter(key: &str, text: &str, node: &Node) -> Option<Diagnostic> {
+    let found = text.chars().find(|sign| is_noncharacter(*sign))?;
+    let message = format!("`{key}` holds the code U+{:04X}, which is no character", u32::from(found));
+    Some(Diagnostic::fault("no-character", message).at(&node.place).hint("take it out"))
+}
+
+/// One of the 32 noncharacters that Unicode sets aside in one row, for use inside programs.
+pub fn is_noncharacter(sign: char) -> bool {
+    ('\u{FDD0}'..='\u{FDEF}').contains(&sign)
 }
 
 /// A file name or the header of a column: any one line.
@@ -49,7 +61,7 @@ pub(super) fn line(key: &str, node: &Node) -> Vec<Diagnostic> {
     let message = match line {
         _ if line.trim().is_empty() => format!("`{key}` is empty"),
         _ if line.chars().any(|c| c.is_control() && c != '\t') => format!("`{key}` has a line break: {}", quoted(line)),
-        _ => return Vec::new(),
+        _ => return text(key, node),
     };
     vec![Diagnostic::fault("bad-name", message).at(&node.place).hint("write one line, as the file or column is called")]
 }
