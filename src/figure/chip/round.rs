@@ -181,7 +181,9 @@ fn linked(mut bits: Vec<Bit>) -> Vec<Bit> {
 /// The line with every slight bend between straight bits drawn out into a curve from middle to middle, so that polygons
 /// that stand for circles look round and lines drift apart without a kink.
 fn smoothed(bits: &[Bit]) -> Vec<Bit> {
-    let closed = bits.len() > 2 && bits.first().map(|bit| bit.from) == bits.last().map(|bit| bit.to);
+    // Cutting bits may move the end by a rounding error.
+    let meet = |first: &Bit, last: &Bit| length(sub(first.from, last.to)) < 1e-9;
+    let closed = bits.len() > 2 && bits.first().zip(bits.last()).is_some_and(|(first, last)| meet(first, last));
     let joint = |at: usize| {
         let (into, out) = (bits.get(at.checked_sub(1)?)?, bits.get(at)?);
         is_slight(into, out).then(|| into.length().min(out.length()) / 2.0)
