@@ -3,6 +3,7 @@
 use crate::cli::Failure;
 use crate::cli::load::Loaded;
 use crate::cli::point::setup;
+use crate::cli::select;
 use crate::compare::Comparison;
 use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Faults;
@@ -28,7 +29,7 @@ type Judged = (MeasuredReading, Expected, f64);
 /// The comparison of all measured readings, in the order of their table, with what the circuit does to each; none where
 /// nothing was measured.
 pub fn comparison(loaded: &Loaded, limit: Option<f64>) -> Option<(Comparison, Vec<RowSource>)> {
-    let meters: Vec<String> = loaded.cooldown.iter().flat_map(|c| &c.meters).map(|meter| meter.name.clone()).collect();
+    let meters = select::meter_names(loaded);
     let mut rows: Vec<Option<(Judged, RowSource)>> = vec![None; loaded.measured.len()];
     for (index, point) in loaded.device.points.iter().enumerate() {
         for polarity in Polarity::BOTH {

@@ -2,6 +2,7 @@
 
 use crate::circuit::Budget;
 use crate::cli::load::Loaded;
+use crate::cli::select;
 use crate::device::ContactIdx;
 use crate::device::Mixing;
 use crate::device::OperatingPoint;
@@ -13,6 +14,7 @@ use crate::report::SolvedPoint;
 use crate::resistance::Candidates;
 use crate::resistance::ClosedForms;
 use crate::resistance::Expected;
+use crate::resistance::FillingRegion;
 use crate::resistance::Reading;
 use crate::resistance::Setup;
 
@@ -78,6 +80,7 @@ fn beside(loaded: &Loaded, solution: &Solution) -> Beside {
         unmixed: with_rim(loaded, &solution.solved, Mixing::None),
         mixed: with_rim(loaded, &solution.solved, Mixing::Full),
         corrections: prediction.corrections(&solution.setup),
+        as_taken: as_taken(loaded, solution),
         two_terminal: two_terminal(loaded, solution),
     }
 }
@@ -99,11 +102,23 @@ fn isolated(loaded: &Loaded, Solution { solved, setup, forms }: &Solution) -> Ve
     let best = |region| {
         let found = crate::resistance::isolating(&loaded.network, setup, forms, (region, candidates));
         let (reading, formula) = report::preferred(forms, &found, drawn)?;
-        let mut expected = crate::resistance::predict(&loaded.network, setup, &[reading]).expected;
-        expected.pop().map(|expected| Expected { formula: Some(formula), ..expected })
+        let mut prediction = crate::resistance::predict(&loaded.network, setup, &[reading]);
+        let why = crate::resistance::why(&loaded.network, setup, &prediction, 0);
+        prediction.expected.pop().map(|expected| (Expected { formula: Some(formula), ..expected }, why))
     };
-    let regions = forms.regions().iter().enumerate().filter(|(_, region)| !region.is_bulk());
-    regions.map(|(at, region)| IsolatedRegion { name: region.name.clone(), best: best(at) }).collect()
+    let region = |(at, region): (usize, &FillingRegion)| {
+        let (best, why) = best(at).unzip();
+        IsolatedRegion { name: region.name.clone(), best, why: why.flatten() }
+    };
+    forms.regions().iter().enumerate().filter(|(_, region)| !region.is_bulk()).map(region).collect()
+}
+
+/// What was measured at the other polarity, with the same meters and sets at this one.
+fn as_taken(loaded: &Loaded, Solution { solved, setup, forms }: &Solution) -> Vec<Expected> {
+    let readings = select::taken_elsewhere(loaded, solved.point, solved.polarity);
+    let mut prediction = crate::resistance::predict(&loaded.network, setup, &readings);
+    prediction.put_closed_forms(forms);
+    prediction.expected
 }
 
 /// The same readings with another mixing along the rim. The devices of a bench change together; where they differ there is

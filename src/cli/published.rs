@@ -75,6 +75,7 @@ impl<'a> Published<'a> {
         };
         Sources {
             device: &self.loaded.device,
+            network: &self.loaded.network,
             cooldown: self.loaded.cooldown.as_ref(),
             points: pairs.map(point).collect(),
             comparison,

@@ -4,9 +4,12 @@ use crate::cli::load::Loaded;
 use crate::cli::point::Asked;
 use crate::device::ContactIdx;
 use crate::device::Device;
+use crate::device::OperatingPoint;
 use crate::diagnostic::Diagnostic;
 use crate::diagnostic::Faults;
 use crate::diagnostic::Findings;
+use crate::measured::MeasuredReading;
+use crate::quantity::Polarity;
 use crate::resistance::Reading;
 
 /// The readings that the device file names, or else the standard set.
@@ -30,6 +33,18 @@ pub fn for_sheet(loaded: &Loaded, point: usize) -> Asked {
         }
     }
     asked
+}
+
+/// The readings of a point that were measured at the other polarity than this one, with their meters and sets.
+pub fn taken_elsewhere(loaded: &Loaded, point: &OperatingPoint, polarity: Polarity) -> Vec<Reading> {
+    let is_here = |row: &MeasuredReading| loaded.device.points.get(row.point) == Some(point);
+    let rows = loaded.measured.iter().filter(|row| is_here(row) && row.polarity != polarity);
+    crate::compare::readings(&rows.collect::<Vec<_>>(), &meter_names(loaded))
+}
+
+/// The meters of the cooldown file, in its order.
+pub fn meter_names(loaded: &Loaded) -> Vec<String> {
+    loaded.cooldown.iter().flat_map(|cooldown| &cooldown.meters).map(|meter| meter.name.clone()).collect()
 }
 
 /// Readings without names.

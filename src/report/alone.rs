@@ -2,16 +2,20 @@
 
 use serde::Serialize;
 
-use crate::device::Device;
 use crate::diagnostic::Diagnostic;
+use crate::quantity::Polarity;
 use crate::report::Beside;
+use crate::report::IsolatedRegion;
 use crate::report::PointSource;
 use crate::report::Printed;
 use crate::report::SmallCell;
 use crate::report::SmallTable;
+use crate::report::Sources;
 use crate::report::Texts;
+use crate::report::WhySource;
 use crate::report::names;
 use crate::report::small_table::TableTexts;
+use crate::report::why;
 use crate::resistance::Expected;
 
 /// The rule for one region.
@@ -36,16 +40,23 @@ pub struct AloneReading {
     pub device: Option<Printed>,
     /// What the meter shows, in kΩ.
     pub shown: Option<Printed>,
+    /// Why it has its number, in a few sentences.
+    pub why: Option<String>,
 }
 
 /// One rule per region with a filling of its own but the bulk.
-pub fn rules(device: &Device, point: &PointSource) -> Vec<AloneRule> {
-    let [toward, away] = point.beside;
-    let of = |beside: &Beside, name: &str| {
+pub fn rules(sources: &Sources, point: &PointSource, texts: &Texts) -> Result<Vec<AloneRule>, Diagnostic> {
+    let source =
+        |polarity| WhySource { device: sources.device, network: sources.network, point: point.point, polarity };
+    let of = |polarity: Polarity, beside: &Beside, name: &str| {
         let mine = beside.isolated.iter().find(|region| region.name == name);
-        mine.and_then(|region| region.best.as_ref()).map(|best| reading(device, best))
+        mine.and_then(|region| reading(source(polarity), region, texts).transpose()).transpose()
     };
-    let rule = |name: &String| AloneRule { region: name.clone(), toward: of(toward, name), away: of(away, name) };
+    let [toward, away] = point.beside;
+    let rule = |name: &String| {
+        let (toward, away) = (of(Polarity::Toward, toward, name)?, of(Polarity::Away, away, name)?);
+        Ok(AloneRule { region: name.clone(), toward, away })
+    };
     toward.isolated.iter().map(|region| rule(&region.name)).collect()
 }
 
@@ -64,13 +75,16 @@ pub fn table(rules: &[AloneRule], texts: &TableTexts) -> SmallTable {
     texts.alone.table(rules.iter().map(row).collect())
 }
 
-fn reading(device: &Device, expected: &Expected) -> AloneReading {
-    AloneReading {
-        leads: names::leads(device, &expected.reading),
+fn reading(source: WhySource, region: &IsolatedRegion, texts: &Texts) -> Result<Option<AloneReading>, Diagnostic> {
+    let Some(expected) = &region.best else { return Ok(None) };
+    let why = region.why.as_ref().map(|why| why::short(source, expected, why, texts)).transpose()?;
+    Ok(Some(AloneReading {
+        leads: names::leads(source.device, &expected.reading),
         value: value(expected),
         device: expected.ohm.map(|ohm| Printed::kilo_ohm(ohm, 4)),
         shown: expected.shown_ohm.map(|ohm| Printed::kilo_ohm(ohm, 4)),
-    }
+        why: why.flatten(),
+    }))
 }
 
 /// `= h/e² × (1/ν_{TG}) = 25.8128 kΩ`, or with the exact fraction of h/e² where there is no closed form; then what the

@@ -85,7 +85,7 @@ fn point_report(
     let measured: Vec<&Row> = all.iter().filter(|row| row.measured.point == index).collect();
     let with_circuit = sources.cooldown.is_some();
     let rows = table::rows(sources.device, point, &measured, words);
-    let alone = alone::rules(sources.device, point);
+    let alone = alone::rules(sources, point, texts)?;
     let all = point.toward.expected.iter().chain(&point.away.expected).chain(measured.iter().map(|row| &row.expected));
     let circuit = all.into_iter().any(|expected| expected.shown_ohm != expected.ohm);
     let wires = point.toward.conductance.links().iter().any(|link| link.resistance > 0.0);

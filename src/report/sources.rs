@@ -11,17 +11,21 @@ use crate::device::Device;
 use crate::device::OperatingPoint;
 use crate::diagnostic::Diagnostic;
 use crate::figure::scene::Scene;
+use crate::network::Network;
 use crate::resistance::ClosedForms;
 use crate::resistance::Expected;
 use crate::resistance::Isolating;
 use crate::resistance::Prediction;
 use crate::resistance::Reading;
+use crate::resistance::Why;
 
 /// Finished results, as the rooms before gave them.
 #[derive(Clone, Debug)]
 pub struct Sources<'a> {
     /// The device.
     pub device: &'a Device,
+    /// Its network, for the names of borders.
+    pub network: &'a Network,
     /// The cooldown; without one the sheet holds expected values only.
     pub cooldown: Option<&'a Cooldown>,
     /// One per operating point of the device, in its order.
@@ -80,6 +84,8 @@ pub struct Beside {
     pub mixed: Vec<Expected>,
     /// What each part of the circuit does alone.
     pub corrections: Vec<Vec<Correction>>,
+    /// Readings that were measured at the other polarity, as they were taken there: what their meters would show here.
+    pub as_taken: Vec<Expected>,
     /// The first two-terminal reading with the uncertainty of what is expected of it.
     pub two_terminal: Option<(Expected, Budget)>,
 }
@@ -91,6 +97,8 @@ pub struct IsolatedRegion {
     pub name: String,
     /// The reading with its value, its closed form included; none where no reading shows the region alone.
     pub best: Option<Expected>,
+    /// Why it has its number.
+    pub why: Option<Why>,
 }
 
 /// The reading to use of a ranked list: the first that leaves the drawn current leads where they are and has four distinct

@@ -3,6 +3,7 @@
 use crate::compare::Row;
 use crate::device::Device;
 use crate::quantity::Polarity;
+use crate::report::Beside;
 use crate::report::PointSource;
 use crate::report::Printed;
 use crate::report::TableRow;
@@ -53,16 +54,17 @@ fn pairs_of<'a>(
         measured.iter().filter(mine).copied().collect()
     };
     let (toward, away) = (taken(Polarity::Toward), taken(Polarity::Away));
-    let side = |prediction: &'a Prediction, rows: &[&'a Row], at: usize| Side {
-        expected: expected_of(prediction, &reading),
-        row: rows.get(at).copied(),
+    let side = |(prediction, beside): (&'a Prediction, &'a Beside), [mine, other]: [&[&'a Row]; 2], at: usize| Side {
+        expected: other.get(at).and_then(|row| as_taken(beside, row)).or_else(|| expected_of(prediction, &reading)),
+        row: mine.get(at).copied(),
     };
+    let [toward_beside, away_beside] = point.beside;
     let count = toward.len().max(away.len()).max(1);
     let pair = |at| Pair {
         reading: reading.clone(),
         name: name.clone(),
-        toward: side(point.toward, &toward, at),
-        away: side(point.away, &away, at),
+        toward: side((point.toward, toward_beside), [&toward, &away], at),
+        away: side((point.away, away_beside), [&away, &toward], at),
     };
     (0..count).map(pair).collect()
 }
@@ -70,6 +72,11 @@ fn pairs_of<'a>(
 fn expected_of<'a>(prediction: &'a Prediction, reading: &Reading) -> Option<&'a Expected> {
     let leads = |reading: &Reading| (reading.current, reading.voltage);
     prediction.expected.iter().find(|expected| leads(&expected.reading) == leads(reading))
+}
+
+/// What would be shown where a row of the other polarity has no partner: by the meter that the row names.
+fn as_taken<'a>(beside: &'a Beside, row: &Row) -> Option<&'a Expected> {
+    beside.as_taken.iter().find(|expected| expected.reading == row.expected.reading)
 }
 
 /// The reading that a row is of.

@@ -14,10 +14,11 @@ pub struct Texts {
 }
 
 /// Every part with its built-in text.
-const PARTS: [(&str, &str); 17] = [
+const PARTS: [(&str, &str); 18] = [
     ("verdict.txt", include_str!("../../templates/verdict.txt")),
     ("why.txt", include_str!("../../templates/why.txt")),
     ("reading-why.txt", include_str!("../../templates/reading-why.txt")),
+    ("alone-why.txt", include_str!("../../templates/alone-why.txt")),
     ("usable.txt", include_str!("../../templates/usable.txt")),
     ("with-care.txt", include_str!("../../templates/with-care.txt")),
     ("not-tested.txt", include_str!("../../templates/not-tested.txt")),

@@ -43,6 +43,8 @@ pub struct Words {
     pub toward: String,
     pub away: String,
     pub reading: String,
+    pub alone_why: String,
+    pub alone_why_key: String,
     pub closed_form: String,
     pub exact: String,
     pub expected: String,

@@ -17,6 +17,7 @@ use crate::sheet::guide::headed;
 use crate::sheet::page::Page;
 use crate::sheet::table::Table;
 use crate::sheet::typeset::Style;
+use crate::sheet::whys;
 
 /// A point is begun only where its heading, the head of its table and a few rows fit.
 const BEGIN_MM: f64 = 48.0;
@@ -44,6 +45,7 @@ pub fn compose(book: &mut Book, scenes: &[[Scene; 2]], rules_left: bool) {
         book.page.anchor(headed(Target::Table(index), 1, answer::table_title(report, point)), book.page.y_mm);
         notes(&mut book.page, report, point);
         rows(book, (index, point));
+        whys::draw(book, point);
         charts(book, (index, point));
         let mut lines = Vec::new();
         point.mixing.iter().for_each(|table| flow::small_table(&mut lines, table, TEXT_MM));

@@ -24,6 +24,7 @@ mod page;
 mod strip;
 mod table;
 mod typeset;
+mod whys;
 
 pub use charts::scenes as chart_scenes;
 pub use compose::Pages;

@@ -138,6 +138,7 @@ impl Solver {
             unmixed: solved.expected.clone(),
             mixed: solved.expected.clone(),
             corrections: solved.corrections(&setup),
+            as_taken: Vec::new(),
             two_terminal: self.two_terminal(&setup, solved),
         })
     }
@@ -160,7 +161,7 @@ impl Solver {
             let reading = found.into_iter().next()?.reading;
             edgesheet::resistance::predict(&self.network, setup, &[reading]).expected.pop()
         };
-        regions.map(|(at, region)| IsolatedRegion { name: region.name.clone(), best: best(at) }).collect()
+        regions.map(|(at, region)| IsolatedRegion { name: region.name.clone(), best: best(at), why: None }).collect()
     }
 
     fn draw(&self, point: usize, side: usize, solved: &Prediction, current: [ContactIdx; 2]) -> Scene {
@@ -236,6 +237,7 @@ fn report(
     });
     let sources = Sources {
         device: &solver.device,
+        network: &solver.network,
         cooldown: solver.cooldown.as_ref(),
         points: points.collect(),
         comparison,

@@ -99,6 +99,7 @@ pub fn make(device: &str, cooldown: Option<(&str, &str)>, listed: Listed) -> Mad
     let input = |name: &str, bytes| Input { name: name.to_string(), bytes, sha256: "0f".repeat(32) };
     let report = report::build(&Sources {
         device: &device,
+        network: &network,
         cooldown: read.as_ref(),
         points: points.collect(),
         comparison: comparison.as_ref(),
@@ -170,16 +171,21 @@ impl Solver<'_> {
             let best = |region| {
                 let found = edgesheet::resistance::isolating(self.network, &setup, &forms, (region, candidates));
                 let (reading, formula) = report::preferred(&forms, &found, current)?;
-                let expected = edgesheet::resistance::predict(self.network, &setup, &[reading]).expected.remove(0);
-                Some(Expected { formula: Some(formula), ..expected })
+                let mut prediction = edgesheet::resistance::predict(self.network, &setup, &[reading]);
+                let why = edgesheet::resistance::why(self.network, &setup, &prediction, 0);
+                Some((Expected { formula: Some(formula), ..prediction.expected.remove(0) }, why))
             };
             let regions = forms.regions().iter().enumerate().filter(|(_, region)| !region.is_bulk());
-            let isolated = regions.map(|(at, region)| IsolatedRegion { name: region.name.clone(), best: best(at) });
+            let isolated = regions.map(|(at, region)| {
+                let (best, why) = best(at).unzip();
+                IsolatedRegion { name: region.name.clone(), best, why: why.flatten() }
+            });
             Beside {
                 isolated: isolated.collect(),
                 unmixed: self.with_rim(point, (side, &solved[side]), Mixing::None),
                 mixed: self.with_rim(point, (side, &solved[side]), Mixing::Full),
                 corrections: solved[side].corrections(&setup),
+                as_taken: Vec::new(),
                 two_terminal: self.two_terminal(&setup, &solved[side]),
             }
         })

@@ -123,3 +123,31 @@ fn cells(tables: &serde_json::Value) -> impl Iterator<Item = &serde_json::Value>
     let rows = tables.as_array().unwrap().iter().flat_map(|table| table["rows"].as_array().unwrap());
     rows.flat_map(|row| row.as_array().unwrap())
 }
+
+/// What a meter would show at the polarity that was not measured stood for the first meter, though the row names the one of
+/// the other polarity. Meter B shows twice the voltage: filling 4 over 2, R_14,25 at `+` is 1/2, R_14,25 at `−` is 0
+/// and R_14,26 is 1/4 and −1/4 (M. Büttiker, Phys. Rev. B 38, 9375 (1988), own algebra): −6.4532 kΩ, shown as −12.9064 kΩ.
+#[test]
+fn the_meter_of_a_row_is_that_of_both_polarities() {
+    let folder = fresh("other-meter");
+    fs::write(folder.join("device.toml"), bar("4", "2", "")).unwrap();
+    let cooldown = "format = 1\ndevice = \"bar\"\nreadings = \"readings.csv\"\n[[meter]]\nname = \"A\"\n[[meter]]\nname = \
+                    \"B\"\ngain = 2\n";
+    fs::write(folder.join("cooldown.toml"), cooldown).unwrap();
+    let readings = "polarity,i_in,i_out,v_plus,v_minus,value,unit,u,meter\n+,1,4,2,6,12.9064(3),kΩ,,B\n+,1,4,3,5,6.4532(3),kΩ,,A\n";
+    fs::write(folder.join("readings.csv"), readings).unwrap();
+    run(&folder, "sheet device.toml cooldown.toml -o out").answer();
+    let record = fs::read_to_string(folder.join("out/bar_cooldown_r1.json")).unwrap();
+    let record: serde_json::Value = serde_json::from_str(&record).unwrap();
+    let rows = record["printed"]["points"][0]["rows"].as_array().unwrap();
+    let away = |name: &str| {
+        let row = rows.iter().find(|row| row["name"] == name).unwrap();
+        row["away"]["expected"]["text"].as_str().unwrap().to_owned()
+    };
+    assert_eq!(away("R_{14,26}"), "−12.90640");
+    assert_eq!(away("R_{14,35}"), "−6.45320");
+    let taken = &record["points"][0]["polarities"][1]["as_taken"];
+    assert_eq!(taken[0]["meter"], "B");
+    assert!((taken[0]["shown_ohm"].as_f64().unwrap() + 25812.807459 / 2.0).abs() < 1e-3, "{taken}");
+    assert_eq!(record["points"][0]["polarities"][0]["as_taken"].as_array().unwrap().len(), 0);
+}

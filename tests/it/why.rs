@@ -343,3 +343,63 @@ fn machine_output_gives_the_number_again() {
     }
     assert!(!run(&folder, "expect bar.toml --json").answer().contains("why"));
 }
+
+/// A bar of filling 2 with an opening in the middle and two contacts on the rim of that: channels turn the other way round it,
+/// and none joins it to the outer rim. From 5 to 6 flow two channels and none with a potential comes back: R_56,56 = 1/2
+/// (M. Büttiker, Phys. Rev. B 38, 9375 (1988): 1/ν between two contacts of one rim).
+#[test]
+fn a_contact_at_a_cut_out_is_told_by_hand() {
+    let outline = |contacts: &str, gate: &str, fillings: &str| {
+        format!(
+            "format = 1\n[device]\nid = \"T\"\nladder = \"spin-split\"\n[mesa]\nshape = \"outline\"\noutline_um = [[0, 0], \
+             [300, 0], [300, 100], [0, 100]]\ncutouts_um = [[[130, 40], [170, 40], [170, 60], [130, 60]]]\n{contacts}{gate}\
+             [[point]]\nname = \"p\"\nbulk = 2\nfillings = {{ {fillings} }}\n"
+        )
+    };
+    let contact =
+        |name: &str, x: u32, y: u32| format!("[[contact]]\nname = \"{name}\"\nat_um = [{x}, {y}]\nwidth_um = 10\n");
+    let contacts = [("1", 0, 50), ("2", 100, 100), ("3", 200, 100), ("4", 300, 50), ("5", 150, 60), ("6", 150, 40)];
+    let contacts: String = contacts.map(|(name, x, y)| contact(name, x, y)).concat();
+    holds(
+        &told(&outline(&contacts, "", ""), "1425", Polarity::Toward),
+        &["not to contact 5: nothing holds that voltage lead"],
+    );
+    holds(
+        &told(&outline(&contacts, "", ""), "5656", Polarity::Toward),
+        &["and the other way round a cut-out", "Contact 5, at share 1, sends out 2 channels", "cut-out", "= 1/2 h/e²"],
+    );
+}
+
+/// Two barriers of one channel in a bar of two with mixing over a length between them: R = (2 − m)/(2(1 − m)) with the share
+/// m = (1 − exp(−2))/2 that changes channel, where length and mixing length are equal (own algebra after M. Büttiker,
+/// Phys. Rev. B 38, 9375 (1988)); there the factor of two is that of departures from the mean. 1.3808 h/e².
+#[test]
+fn mixing_over_a_length_is_told_with_shares_in_decimals() {
+    let parts = [("A", "gate", 210, 250, "1"), ("B", "gate", 350, 390, "1")];
+    let text = six_text("2", &parts, "mixing = { length_um = 50 }");
+    let told = told(&text, "1414", Polarity::Toward);
+    holds(&told, &["over whose length channels mix in part", "= 1.3808 h/e² = 35.6422 kΩ"]);
+    // What is stated gives the number again: the last line divides the shares by the current of the line before.
+    let last = |line: &str| told.lines().find(|found| found.starts_with(line)).unwrap().to_owned();
+    let current: f64 = last("Current:").split(" = ").nth(1).unwrap().split(',').next().unwrap().parse().unwrap();
+    assert!((1.0 / current - 1.380797).abs() < 2e-4, "{told}");
+}
+
+/// One mode each way: a ring of six conductances e²/h. R_14,23 = 1/2 (M. Büttiker, Science 325, 278 (2009), and A. Roth et
+/// al., Science 325, 294 (2009); values from memory, algebra verified): shares fall by thirds along each arm, and from
+/// contact 1 to 2 and to 6 together flow 2 × 1/3 e²/h.
+#[test]
+fn modes_that_run_both_ways_are_told_by_hand() {
+    let text = six_text("1", &[], "").replace("bulk = 1\nfillings = {  }\n", "modes = { forward = 1, backward = 1 }\n");
+    holds(
+        &told(&text, "1423", Polarity::Toward),
+        &[
+            "forward modes run clockwise round the outer rim, backward modes the other way",
+            "2/3",
+            "1/3",
+            "The + lead on contact 2 reads share 2/3, the − lead on contact 3 share 1/3.",
+            "= 2/3, in e²/h",
+            "= (2/3 − 1/3)/(2/3) h/e² = 1/2 h/e² = 12.9064 kΩ",
+        ],
+    );
+}

@@ -15,6 +15,7 @@ use crate::report::numbers::points::PointNumbers;
 
 mod measured;
 mod points;
+mod whys;
 
 pub use measured::verdict_word;
 

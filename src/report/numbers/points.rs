@@ -21,6 +21,8 @@ use crate::report::numbers::measured::LoopNumbers;
 use crate::report::numbers::measured::MeasuredNumbers;
 use crate::report::numbers::measured::UncertaintyNumbers;
 use crate::report::numbers::state_words;
+use crate::report::numbers::whys;
+use crate::report::numbers::whys::WhyNumbers;
 use crate::resistance::Expected;
 use crate::resistance::Prediction;
 
@@ -77,6 +79,8 @@ pub struct PolarityNumbers {
     pub readings: Vec<ReadingNumbers>,
     /// For every region with a filling of its own but the bulk: the reading that shows it alone.
     pub alone: Vec<AloneNumbers>,
+    /// Readings measured at the other polarity: what the same meters would show at this one.
+    pub as_taken: Vec<AsTakenNumbers>,
     /// The first two-terminal reading with the uncertainty of what is expected of it; null where nothing is known of it.
     pub two_terminal: Option<TwoTerminalNumbers>,
 }
@@ -128,6 +132,23 @@ pub struct AloneNumbers {
     pub region: String,
     /// The reading; null where none shows the region alone.
     pub reading: Option<ReadingNumbers>,
+    /// Why it has its number; null without a reading.
+    pub why: Option<WhyNumbers>,
+}
+
+/// A reading that was measured at the other polarity, as it was taken there.
+#[derive(Clone, Debug, PartialEq, Serialize, JsonSchema)]
+pub struct AsTakenNumbers {
+    /// Contacts at which the current enters and leaves.
+    pub current: [String; 2],
+    /// Contacts at the + and the − input of the meter.
+    pub voltage: [String; 2],
+    /// The meter, as the cooldown file names it; null for the first.
+    pub meter: Option<String>,
+    /// What it would show in Ω; null where there is no number.
+    pub shown_ohm: Option<f64>,
+    /// The part of it in quadrature in Ω, lagging negative; null at direct current.
+    pub shown_quadrature_ohm: Option<f64>,
 }
 
 /// A two-terminal reading with the uncertainty of what is expected of it.
@@ -161,6 +182,18 @@ pub(super) fn point(sources: &Sources, (index, point): (usize, &PointSource)) ->
         measured: here.map(|row| measured::measured(sources, row)).collect(),
         closure: measured::loops(device, rows, index),
     }
+}
+
+fn as_taken(sources: &Sources, beside: &Beside) -> Vec<AsTakenNumbers> {
+    let meter = |at: usize| Some(sources.cooldown?.meters.get(at)?.name.clone());
+    let one = |expected: &Expected| AsTakenNumbers {
+        current: contact_names(sources.device, expected.reading.current),
+        voltage: contact_names(sources.device, expected.reading.voltage),
+        meter: expected.reading.meter.and_then(meter),
+        shown_ohm: expected.shown_ohm,
+        shown_quadrature_ohm: expected.shown_quadrature_ohm,
+    };
+    beside.as_taken.iter().map(one).collect()
 }
 
 fn mixing(rule: &Mixing) -> MixingRule {
@@ -205,8 +238,10 @@ fn polarity(
             .map(|region| AloneNumbers {
                 region: region.name.clone(),
                 reading: region.best.as_ref().map(|best| reading(device, best)),
+                why: region.best.as_ref().zip(region.why.as_ref()).and_then(|(best, why)| whys::why(device, best, why)),
             })
             .collect(),
+        as_taken: as_taken(sources, beside),
         two_terminal: beside.two_terminal.as_ref().map(|(expected, budget)| TwoTerminalNumbers {
             reading: reading(device, expected),
             uncertainty: measured::uncertainty(sources, budget),

@@ -3,11 +3,13 @@
 mod names;
 mod output;
 mod phrases;
+mod short;
 mod text;
 
 pub use names::names;
 pub use output::WhyOutput;
 pub use output::output;
+pub use short::short;
 pub use text::plain;
 pub use text::text;
 
@@ -117,9 +119,9 @@ struct NumberFields {
 
 fn fields(source: WhySource, expected: &Expected, why: &Why) -> Fields {
     let WhySource { device, network, point, polarity } = source;
-    let [electrons, holes] = [false, true].map(|negative| carries(point, negative));
+    let [electrons, holes] = signs_at(point);
     let mixtures = mixtures(why);
-    let phrases = Phrases { device, network, signs: signs(device, point, electrons && holes), mixtures: &mixtures };
+    let phrases = Phrases { device, network, signs: spoken_signs(device, point), mixtures: &mixtures };
     let [inlet, outlet] = expected.reading.current.map(|contact| phrases.contact(contact));
     let [plus, minus] = expected.reading.voltage.map(|contact| phrases.contact(contact));
     let (explanation, lost) = match why {
@@ -161,8 +163,14 @@ fn carries(point: &OperatingPoint, negative: bool) -> bool {
     fillings.filter(|filling| !filling.is_zero()).any(|filling| filling.is_negative() == negative)
 }
 
+/// Whether there are electrons, and whether there are holes.
+fn signs_at(point: &OperatingPoint) -> [bool; 2] {
+    [false, true].map(|negative| carries(point, negative))
+}
+
 /// Words for channels of either sense, where both run.
-fn signs(device: &Device, point: &OperatingPoint, both_signs: bool) -> Option<[&'static str; 2]> {
+fn spoken_signs(device: &Device, point: &OperatingPoint) -> Option<[&'static str; 2]> {
+    let both_signs = signs_at(point) == [true, true];
     match (point.modes, device.driven_by) {
         (Some(modes), _) => (modes.forward > 0 && modes.backward > 0).then_some(["forward ", "backward "]),
         (None, Drive::Magnetisation) => both_signs.then_some(["positive ", "negative "]),

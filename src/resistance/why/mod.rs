@@ -210,6 +210,18 @@ impl Explanation {
         let balance = self.balance.arrivals.iter().map(|one| &one.strand);
         self.steps.iter().flat_map(WhyStep::strands).chain(balance)
     }
+
+    /// What a contact takes up, where its share rests on that; none for inlet and outlet.
+    pub fn arrivals(&self, contact: ContactIdx) -> Option<&[Arrival]> {
+        self.steps.iter().find_map(|step| match step {
+            WhyStep::Leaves { .. } => None,
+            WhyStep::HandedOn { contacts, arrivals, .. } => {
+                let place = contacts.iter().position(|one| *one == contact)?;
+                arrivals.get(place).map(Vec::as_slice)
+            }
+            WhyStep::Mean { at, arrivals, .. } => (*at == Origin::Contact(contact)).then_some(arrivals.as_slice()),
+        })
+    }
 }
 
 impl Strand {
