@@ -297,7 +297,6 @@ fn random_shapes_are_laid_out_exactly_or_refused_with_reasons() {
             }
         }
     }
-    println!("{drawn} of {} random shapes drawn", 6 * SHAPES);
     assert!(drawn > SHAPES / 2, "only {drawn} of {} random shapes could be drawn", 6 * SHAPES);
 }
 

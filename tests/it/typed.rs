@@ -117,7 +117,9 @@ fn no_code_of_a_mark_is_written() {
         for line in ["expect", "expect --why", "expect --json --why", "check", "sheet -o out --figures"] {
             let arguments = line.split(' ').chain(["device.toml", cooldown]).filter(|word| !word.is_empty());
             let said = ran(&mut program(&folder, arguments));
-            assert!([0, 1].contains(&said.code), "{line}: {}", said.err);
+            // A bench whose devices are joined by wires is not explained channel by channel.
+            let refused = said.code == 2 && said.err.contains("why-across-wires");
+            assert!([0, 1].contains(&said.code) || refused, "{line}: {}", said.err);
             assert!(!inside(&said.out) && !inside(&said.err), "{line} on {}", demo.display());
         }
         for (name, path) in files(&folder.join("out")) {
