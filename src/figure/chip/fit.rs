@@ -283,7 +283,10 @@ impl Fit<'_> {
 
     fn finished(&self, placed: &Placed, (_, below, _): Margins) -> (Scene, usize) {
         let drawing = self.drawing;
-        let reaches = reaches(drawing, &placed.laid.lanes, self.mixing);
+        // Lines that cross would show other channels than were solved: none are better than wrong ones.
+        let are_true = placed.laid.crossings == 0;
+        let lanes = if are_true { placed.laid.lanes.as_slice() } else { &[] };
+        let reaches = reaches(drawing, lanes, self.mixing);
         let arrows = arrows(drawing, &reaches);
         let overlays = scenery::overlays(drawing, &placed.chains);
         let height_mm = placed.plane.covered().bottom + below;
@@ -294,6 +297,7 @@ impl Fit<'_> {
             overlays: &overlays,
             chains: &placed.chains,
             mm_per_nm: placed.plane.mm_per_nm,
+            channels: if are_true { labels::Channels::Drawn } else { labels::Channels::TooNear },
             reaches: &reaches,
             arrows: &arrows,
             height_mm,

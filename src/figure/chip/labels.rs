@@ -28,9 +28,18 @@ pub(super) struct Sketch<'a> {
     pub chains: &'a Chains,
     /// Millimetres per nanometre, where the drawing is to scale.
     pub mm_per_nm: Option<f64>,
+    pub channels: Channels,
     pub reaches: &'a [Reach<'a>],
     pub arrows: &'a [Arrow],
     pub height_mm: f64,
+}
+
+/// Whether the channels stand on the drawing.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Channels {
+    Drawn,
+    /// Somewhere lines lie so near to each other that they cross.
+    TooNear,
 }
 
 /// All labels, and what it costs that some found no free place.
@@ -162,6 +171,10 @@ impl Placing<'_> {
         let (words, bar_mm) = match self.sketch.mm_per_nm.and_then(scale_bar) {
             Some((nm, bar_mm)) => (length_words(nm), bar_mm),
             None => ("not to scale".to_owned(), 0.0),
+        };
+        let words = match self.sketch.channels {
+            Channels::Drawn => words,
+            Channels::TooNear => format!("channels lie too near to be drawn here; {words}"),
         };
         let note = small(words);
         self.put(&note, (end.0 - note.width() / 2.0, end.1));
