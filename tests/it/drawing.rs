@@ -4,6 +4,8 @@
 use edgesheet::device::ContactIdx;
 use edgesheet::figure::ChipDrawing;
 use edgesheet::figure::draw_chip;
+use edgesheet::figure::scene::Mark;
+use edgesheet::figure::scene::Role;
 use edgesheet::figure::scene::Scene;
 use edgesheet::quantity::Polarity;
 
@@ -176,3 +178,53 @@ fn assert_well_formed(svg: &str) {
     }
     assert!(open.is_empty(), "{open:?}");
 }
+
+/// A hair-thin gate of the other carrier across a corner of a gate: lines would cross there, and a drawing without channels
+/// that says so stands in place of a wrong one.
+#[test]
+fn lines_that_would_cross_are_not_drawn() {
+    let made = make(HAIR);
+    let told = BOTH.map(|polarity| {
+        let (scene, _) = drawn(&made, polarity, HALF_PAGE_MM);
+        let channel = |mark: &Mark| matches!(mark, Mark::Path(path) if matches!(path.role, Role::Channel { .. }));
+        let note = |mark: &Mark| match mark {
+            Mark::Text(text) => text.runs.iter().any(|run| run.text.contains("too near to be drawn")),
+            Mark::Path(_) => false,
+        };
+        let told = scene.marks.iter().any(note);
+        assert_ne!(told, scene.marks.iter().any(channel), "{polarity:?}");
+        told
+    });
+    assert!(told.contains(&true), "{told:?}");
+}
+
+const HAIR: &str = r#"format = 1
+[device]
+id = "X"
+[mesa]
+shape = "outline"
+outline_um = [[0, 0], [300, 0], [300, 100], [0, 100]]
+[[contact]]
+name = "1"
+at_um = [0, 50]
+width_um = 40
+[[contact]]
+name = "2"
+at_um = [300, 50]
+width_um = 40
+[[contact]]
+name = "3"
+at_um = [150, 100]
+width_um = 10
+[[gate]]
+name = "A"
+outline_um = [[267, 1], [196, 92], [54, 42]]
+[[gate]]
+name = "B"
+outline_um = [[97, -8], [170, 44], [232, 101]]
+[[point]]
+name = "p"
+field_T = 1
+bulk = 12
+fillings = { A = 7, B = -5, "A+B" = 3 }
+"#;
